@@ -1,0 +1,1 @@
+"""Judgement as data: one named rule each, a condition over columns, a sentence, a source."""

@@ -1,0 +1,75 @@
+"""The facts that rules look at: columns, one row a part of a reach.
+
+Every column has the shape (N,); one estimate is N = 1. Unknown numbers are NaN (a
+comparison with NaN is false, so a rule stays silent where a fact is missing), unknown
+words are the empty string.
+"""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+from roughness.survey.words import Factor
+
+Numbers = NDArray[np.float64]
+Flags = NDArray[np.bool_]
+Words = NDArray[np.str_]
+
+
+@dataclass(frozen=True, kw_only=True)
+class FactorFacts:
+    """What was chosen for one factor, beside what its table says."""
+
+    grade: Words
+    """Key of the grade, '' where numbers stand alone."""
+    rank: Numbers
+    """Place of the grade in its table, 0 for the first; NaN where there is none."""
+    low: Numbers
+    best: Numbers
+    high: Numbers
+    published_low: Numbers
+    """NaN where nothing is published for the grade as it was met."""
+    published_high: Numbers
+    own_best: Flags
+    """Whether the best value was given and not taken from the table."""
+    noted: Flags
+    lower_bound: Flags
+    """Whether the grade's value is the smoothest attainable (base alone)."""
+    measured_says: Words
+    """The measured criterion in words, 'blocked 8 %'; '' where none was given."""
+    candidates: Words
+    """Grades the measured criterion leaves, separated by blanks; '' where it is silent."""
+    near: Words
+    """Both grades, separated by a blank, where the criterion lies near a class edge; else ''."""
+    gap_low: Numbers
+    """Limits of the published gap that holds the best value; NaN where there is none."""
+    gap_high: Numbers
+    numbers: Mapping[str, Numbers] = field(default_factory=dict)
+    """Criteria that are numbers, by field name of the choice."""
+    words: Mapping[str, Words] = field(default_factory=dict)
+    """Criteria that are words or yes/no ('yes', 'no'), by field name of the choice."""
+
+
+@dataclass(frozen=True, kw_only=True)
+class Facts:
+    """Everything an estimate's own rules may look at."""
+
+    setting: Words
+    asked_handbook: Words
+    """The handbook that was asked for; it differs from the next where a plain was handed over."""
+    handbook: Words
+    n_low: Numbers
+    n_best: Numbers
+    n_high: Numbers
+    factors: Mapping[Factor, FactorFacts]
+    """By factor; a flood plain has its variation and meander at 0 and 1."""
+    d50_mm: Numbers
+    d84_mm: Numbers
+    slope: Numbers
+    hydraulic_radius_m: Numbers
+    depth_m: Numbers
+    width_m: Numbers
+    vegetation_height_m: Numbers
+    slope_along: Words
