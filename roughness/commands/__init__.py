@@ -1,0 +1,145 @@
+"""One file a verb. Nothing is imported before the verb is known, so that starting is quick.
+
+Exit status of every verb: 0 done; 1 done, and a ``stop`` finding or a failed check
+stands; 2 the input is wrong (one sentence on stderr, nothing written).
+"""
+
+import argparse
+import os
+import sys
+from collections.abc import Sequence
+from dataclasses import dataclass
+from importlib import import_module
+from pathlib import Path
+from typing import NoReturn, Protocol, cast
+
+from roughness import __version__
+from roughness.errors import RoughnessError
+
+DONE, STANDS_STOPPED, WRONG_INPUT = 0, 1, 2
+
+# The verbs in the order in which a survey meets them, with the line `--help` shows.
+VERBS: dict[str, str] = {
+    "demo": "a copy of the invented demo survey, opened",
+    "new": "make a survey, from a list of reaches or empty",
+    "list": "reaches with n, range, status and open findings",
+    "show": "one reach's reasoning, as text",
+    "record": "put an estimate into a reach's trail",
+    "adopt": "let another n than the estimate go to the model, with a reason",
+    "estimate": "n, range, spread, findings and reasoning for one part",
+    "check": "trails, handbooks and findings of a survey",
+    "export": "the table of n for a model: .csv or .json",
+    "tables": "handbooks and their rows",
+    "schema": "the JSON Schema of an input or output",
+}
+
+_USAGE = """\
+usage: roughness [SURVEY]            the screens
+       roughness VERB ... [--help]   one of the verbs below
+
+Documents Manning's n for every reach of a surveyed stream: the value, its range,
+and the reasons, so that somebody else can check them.
+
+{verbs}
+
+A FILE may be - for standard input. n is a judgement: calibrate it to observed flows
+where they exist, and let a licensed practitioner review it.
+"""
+
+
+@dataclass(frozen=True)
+class Screens:
+    """The wish to see the screens."""
+
+    survey: Path | None
+    by: str | None = None
+    demo: bool = False
+
+
+class Verb(Protocol):
+    """What the file of a verb offers."""
+
+    def add_arguments(self, parser: argparse.ArgumentParser) -> None:
+        """Declare what the verb takes."""
+
+    def run(self, args: argparse.Namespace) -> int | Screens:
+        """Do it."""
+
+
+class _Parser(argparse.ArgumentParser):
+    def error(self, message: str) -> NoReturn:
+        complain(f"{self.prog}: {message}; see `{self.prog} --help`")
+        raise SystemExit(WRONG_INPUT)
+
+
+def complain(sentence: str) -> None:
+    """Say on standard error what is wrong; standard output is for results alone."""
+    print(f"roughness: {sentence}" if ":" not in sentence[:10] else sentence, file=sys.stderr)
+
+
+def run(words: Sequence[str]) -> int | Screens:
+    """Run the command line ``words``; return the exit status, or the wish for the screens."""
+    try:
+        return _dispatch(words)
+    except RoughnessError as error:
+        complain(str(error))
+        return WRONG_INPUT
+    except OSError as error:
+        complain(_about_file(error))
+        return WRONG_INPUT
+    except KeyboardInterrupt:
+        complain("stopped")
+        return WRONG_INPUT
+    except SystemExit as leave:
+        return leave.code if isinstance(leave.code, int) else WRONG_INPUT
+
+
+def _dispatch(words: Sequence[str]) -> int | Screens:
+    first = words[0] if words else ""
+    if first in ("-h", "--help", "help"):
+        print(help_page(), end="")
+        return DONE
+    if first == "--version":
+        print(f"roughness {__version__}")
+        return DONE
+    if first in VERBS:
+        return _run_verb(first, words[1:])
+    return _open(words)
+
+
+def _run_verb(name: str, words: Sequence[str]) -> int | Screens:
+    verb = cast(Verb, import_module(f"roughness.commands.{name}"))
+    parser = _Parser(prog=f"roughness {name}", description=verb.__doc__, allow_abbrev=False)
+    verb.add_arguments(parser)
+    outcome = verb.run(parser.parse_args(words))
+    sys.stdout.flush()
+    return outcome
+
+
+def _open(words: Sequence[str]) -> int | Screens:
+    parser = _Parser(prog="roughness", allow_abbrev=False)
+    parser.add_argument("survey", nargs="?", type=Path)
+    parser.add_argument("--by")
+    args = parser.parse_args(words)
+    if args.survey is not None and not args.survey.exists() and "/" not in str(args.survey):
+        from roughness.quantities.foreign_text import nearest
+
+        hint = nearest(str(args.survey), VERBS)
+        if hint:
+            complain(f"{args.survey} is neither a verb nor a survey; {hint}")
+            return WRONG_INPUT
+    if not (sys.stdin.isatty() and sys.stdout.isatty()):
+        complain("the screens need a terminal; `roughness list SURVEY` prints the table")
+        return WRONG_INPUT
+    return Screens(args.survey, by=args.by)
+
+
+def help_page() -> str:
+    """Return what ``roughness --help`` prints: one page."""
+    width = max(map(len, VERBS))
+    return _USAGE.format(verbs="\n".join(f"  {v:<{width}}  {line}" for v, line in VERBS.items()))
+
+
+def _about_file(error: OSError) -> str:
+    name = os.fspath(error.filename) if error.filename is not None else "output"
+    return f"{name}: {(error.strerror or str(error)).lower()}"
