@@ -105,14 +105,17 @@ class Facts:
     @property
     def in_channel(self) -> Flags:
         """Whether the row's part is a channel."""
-        return self.setting == "channel"
+        rows: Flags = self.setting == "channel"
+        return rows
 
     @property
     def on_flood_plain(self) -> Flags:
         """Whether the row's part is a flood plain."""
-        return self.setting == "flood-plain"
+        rows: Flags = self.setting == "flood-plain"
+        return rows
 
     @property
     def whole_part(self) -> Flags:
         """Whether the row stands for a whole part and not for its bed or banks."""
-        return self.segment == ""
+        rows: Flags = self.segment == ""
+        return rows

@@ -1,0 +1,206 @@
+"""Rules about ranges: published limits, gaps, too narrow, outside what was measured."""
+
+from typing import Final
+
+import numpy as np
+
+from roughness.findings.facts import FactorFacts, Facts, Flags
+from roughness.findings.rule import COMMON_PRACTICE, Case, rule, rule_of_each
+from roughness.findings.wording import FACTOR_WORDS, in_words, starting
+from roughness.quantities.printing import rounded, show_n, show_value
+from roughness.survey.words import FACTORS, Factor
+
+# Sums such as 0.1 + 0.2 carry noise in the 17th digit; no table has steps this small.
+NOISE: Final = 1e-12
+NARROWEST: Final = 0.10
+LEAST_IN_CHANNELS: Final = 0.017
+MOST_IN_CHANNELS: Final = 0.15
+STEEP: Final = 0.02
+MOST_ON_FLOOD_PLAINS: Final = 0.20
+
+THE_TABLE: Final = "the published table of the handbook in use"
+
+
+def _outside(chosen: FactorFacts) -> Flags:
+    return (chosen.low < chosen.published_low - NOISE) | (
+        chosen.high > chosen.published_high + NOISE
+    )
+
+
+def _says_outside(facts: Facts, factor: Factor, row: int) -> str:
+    chosen = facts.factors[factor]
+    low, best, high = (show_value(c[row]) for c in (chosen.low, chosen.best, chosen.high))
+    limits = (show_value(c[row]) for c in (chosen.published_low, chosen.published_high))
+    grade = f" for '{in_words(chosen.grade[row])}'" if chosen.grade[row] else ""
+    return (
+        f"{starting(FACTOR_WORDS[factor])} {best}, from {low} to {high}, leaves the published "
+        f"{' to '.join(dict.fromkeys(limits))}{grade}"
+    )
+
+
+@rule_of_each(
+    "outside-published-range",
+    "stop",
+    meaning="a value or a limit leaves the published range and no note says why",
+    source=THE_TABLE,
+    factors=FACTORS,
+)
+def outside_published_range(facts: Facts, factor: Factor) -> Case:
+    """Best lies between low and high, so the limits tell of all three."""
+    chosen = facts.factors[factor]
+    return Case(
+        _outside(chosen) & ~chosen.noted,
+        lambda row: (
+            f"{_says_outside(facts, factor, row)}, and no note says why; "
+            "say why in a note or return to the published range."
+        ),
+    )
+
+
+@rule_of_each(
+    "outside-published-range-noted",
+    "ask",
+    meaning="a value or a limit leaves the published range; the reviewer weighs the note",
+    source=THE_TABLE,
+    factors=FACTORS,
+)
+def outside_published_range_noted(facts: Facts, factor: Factor) -> Case:
+    """Leaving the range with a reason is allowed, and still somebody should weigh it."""
+    chosen = facts.factors[factor]
+    return Case(
+        _outside(chosen) & chosen.noted,
+        lambda row: f"{_says_outside(facts, factor, row)}; does its note carry that far?",
+    )
+
+
+@rule_of_each(
+    "own-value-without-note",
+    "stop",
+    meaning="a value of one's own stands where nothing is published, and no note says why",
+    source=COMMON_PRACTICE,
+    factors=FACTORS,
+)
+def own_value_without_note(facts: Facts, factor: Factor) -> Case:
+    """Where no table backs a value, only a note can."""
+    chosen = facts.factors[factor]
+    return Case(
+        chosen.own_best & np.isnan(chosen.published_low) & ~chosen.noted,
+        lambda row: (
+            f"{starting(FACTOR_WORDS[factor])} {show_value(chosen.best[row])} rests on no "
+            "published value and on no note; say in a note where it comes from."
+        ),
+    )
+
+
+@rule_of_each(
+    "inside-published-gap",
+    "tell",
+    meaning="the best value lies where the table jumps from one grade to the next",
+    source=THE_TABLE,
+    factors=FACTORS,
+)
+def inside_published_gap(facts: Facts, factor: Factor) -> Case:
+    """Nobody published a value there: it belongs to neither grade."""
+    chosen = facts.factors[factor]
+    return Case(
+        (chosen.best > chosen.gap_low) & (chosen.best < chosen.gap_high),
+        lambda row: (
+            f"{starting(FACTOR_WORDS[factor])} {show_value(chosen.best[row])} lies between two "
+            f"grades: nothing is published from {show_value(chosen.gap_low[row])} to "
+            f"{show_value(chosen.gap_high[row])}."
+        ),
+    )
+
+
+@rule(
+    "range-narrow",
+    "ask",
+    meaning="low and high of n are the same or less than 10 % of n apart",
+    source=COMMON_PRACTICE,
+)
+def range_narrow(facts: Facts) -> Case:
+    """Nobody reads n off a stream that closely."""
+    width = facts.n_high - facts.n_low
+
+    def says(row: int) -> str:
+        if width[row] <= 0:
+            return (
+                f"n {show_n(facts.n_best[row])} has no range at all; "
+                "give low and high, or say in a note why the value is certain."
+            )
+        share = rounded(100 * float(width[row] / facts.n_best[row]), 0)
+        return (
+            f"The whole range of n, {show_n(facts.n_low[row])} to {show_n(facts.n_high[row])}, "
+            f"is {share} % of n, closer than n can be judged by eye; widen it or say why in a note."
+        )
+
+    return Case((width < NARROWEST * facts.n_best - NOISE) & facts.whole_part, says)
+
+
+@rule(
+    "n-low-for-channel",
+    "ask",
+    meaning="n of a channel is below 0.017, less than was measured in natural channels",
+    source="measured natural channels as Barnes 1967 (USGS WSP 1849); the limit from memory",
+)
+def n_low_for_channel(facts: Facts) -> Case:
+    """Ask: a smooth lining explains it, in a natural stream it is rarely right."""
+    low = facts.n_best < LEAST_IN_CHANNELS
+    return Case(
+        low & facts.in_channel & facts.whole_part,
+        lambda row: (
+            f"n {show_n(facts.n_best[row])} is below {LEAST_IN_CHANNELS}, the least measured in "
+            "natural channels; say in a note what makes this one so smooth, a lining for one."
+        ),
+    )
+
+
+@rule(
+    "n-high-for-channel",
+    "ask",
+    meaning="n of a channel is above 0.15 and its slope is not known to be 0.02 or more",
+    source=COMMON_PRACTICE,
+)
+def n_high_for_channel(facts: Facts) -> Case:
+    """Steep streams with large roughness reach it; an unknown slope excuses nothing."""
+    high = (facts.n_best > MOST_IN_CHANNELS + NOISE) & ~(facts.slope >= STEEP)
+
+    def says(row: int) -> str:
+        slope = facts.slope[row]
+        told = "of unknown slope" if np.isnan(slope) else f"of slope {show_value(slope)}"
+        return (
+            f"n {show_n(facts.n_best[row])} is above {MOST_IN_CHANNELS} in a channel {told}, more "
+            "than is measured where slopes are under 0.02; check that nothing is counted twice."
+        )
+
+    return Case(high & facts.in_channel & facts.whole_part, says)
+
+
+@rule(
+    "n-high-for-flood-plain",
+    "ask",
+    meaning="n of a flood plain is above 0.20, more than was measured on wooded plains",
+    source="Arcement & Schneider 1989 (USGS WSP 2339), largest n of its measured flood plains",
+)
+def n_high_for_flood_plain(facts: Facts) -> Case:
+    """Ask above the 0.20 that the densest measured flood plains of the guide reach."""
+    high = facts.n_best > MOST_ON_FLOOD_PLAINS + NOISE
+    return Case(
+        high & facts.on_flood_plain & facts.whole_part,
+        lambda row: (
+            f"n {show_n(facts.n_best[row])} is above 0.20, the most measured on wooded flood "
+            "plains; check that nothing is counted twice, or say in a note why it is more."
+        ),
+    )
+
+
+RULES = (
+    outside_published_range,
+    outside_published_range_noted,
+    own_value_without_note,
+    inside_published_gap,
+    range_narrow,
+    n_low_for_channel,
+    n_high_for_channel,
+    n_high_for_flood_plain,
+)

@@ -1,0 +1,33 @@
+"""How grades and factors are called inside the sentences of findings."""
+
+from roughness.quantities.foreign_text import printable
+from roughness.quantities.printing import enumerate_words
+
+FACTOR_WORDS = {
+    "base": "base value",
+    "irregularity": "irregularity",
+    "variation": "variation of the section",
+    "obstruction": "obstruction",
+    "vegetation": "vegetation",
+    "meander": "multiplier for bends",
+}
+
+
+def in_words(key: str) -> str:
+    """Return a key as words: ``very-large`` reads 'very large'."""
+    return printable(key).replace("-", " ")
+
+
+def either(keys: str) -> str:
+    """Join keys that blanks separate: 'minor' or 'appreciable'."""
+    return enumerate_words([f"'{in_words(key)}'" for key in keys.split()], last="or")
+
+
+def both(keys: str) -> str:
+    """Join keys that blanks separate: 'minor' and 'appreciable'."""
+    return enumerate_words([f"'{in_words(key)}'" for key in keys.split()])
+
+
+def starting(sentence: str) -> str:
+    """Return the sentence with its first letter as a capital."""
+    return sentence[:1].upper() + sentence[1:]
