@@ -47,7 +47,12 @@ class _Reading:
 
 
 def candidates(
-    handbook: Handbook, setting: Setting, factor: Factor, criteria: Mapping[str, Any]
+    handbook: Handbook,
+    setting: Setting,
+    factor: Factor,
+    criteria: Mapping[str, Any],
+    *,
+    where: str = "",
 ) -> Candidates:
     """Return the grades that the measured criteria of one factor leave.
 
@@ -58,6 +63,8 @@ def candidates(
     criteria : mapping
         What was measured, by field name of the factor's choice (``blocked_percent``,
         ``sinuosity``, ``d50_mm``, ...). Fields that measure nothing are passed over.
+    where : str
+        Place of the choice, for messages.
 
     Returns
     -------
@@ -72,7 +79,10 @@ def candidates(
         a size or length that is not above 0, a channel shorter than its valley.
     """
     read = _READERS.get(factor)
-    reading = read(criteria) if read else None
+    try:
+        reading = read(criteria) if read else None
+    except InputError as error:
+        raise type(error)(error.what, where=where, wanted=error.wanted) from None
     if reading is None:
         return Candidates()
     if reading.value is None:

@@ -120,7 +120,9 @@ def _not_toml(message: str, text: str, refuse: Refuse) -> HandbookError:
 
 
 def _first_fault(error: ValidationError, document: dict[str, Any], refuse: Refuse) -> HandbookError:
-    fault = error.errors(include_url=False)[0]
+    faults = error.errors(include_url=False)
+    # A misspelt key makes two faults; the one that shows the spelling helps more.
+    fault = next((f for f in faults if f["type"] == "extra_forbidden"), faults[0])
     loc, kind = fault["loc"], fault["type"]
     place = place_of(loc, document)
     if kind == "extra_forbidden":

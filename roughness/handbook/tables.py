@@ -153,8 +153,8 @@ class Handbook:
         table = self.tables.get(setting, {}).get(factor)
         return table.grades if table else ()
 
-    def grade(self, setting: Setting, factor: Factor, key: str) -> Grade:
-        """Return one grade by its key.
+    def grade(self, setting: Setting, factor: Factor, key: str, *, where: str = "") -> Grade:
+        """Return one grade by its key; ``where`` is the place of the choice, for messages.
 
         Raises
         ------
@@ -170,6 +170,7 @@ class Handbook:
         known = f"known for {setting} are {enumerate_words(keys)}"
         raise UnknownNameError(
             f"{self.key} has no grade {printable(key)!r} of {factor}",
+            where=where,
             wanted=f"{near}? {known}" if near else known,
         )
 
