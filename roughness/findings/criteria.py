@@ -6,9 +6,9 @@ import numpy as np
 
 from roughness.findings.facts import FactorFacts, Facts, Flags, Words
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule, rule_of_each
-from roughness.findings.wording import FACTOR_WORDS, both, either, in_words, starting
+from roughness.findings.wording import FACTOR_WORDS, both, either, in_words, ratio, starting
 from roughness.quantities.foreign_text import printable
-from roughness.quantities.printing import rounded, show_value
+from roughness.quantities.printing import show_value
 from roughness.survey.words import FACTORS, Factor
 
 SHORTEST_IN_WIDTHS: Final = 10.0
@@ -92,7 +92,7 @@ def short_stretch_for_sinuosity(facts: Facts) -> Case:
         length < SHORTEST_IN_WIDTHS * facts.width_m,
         lambda row: (
             f"Sinuosity was taken from {show_value(length[row])} m of channel, "
-            f"{rounded(float(length[row] / facts.width_m[row]), 1)} times its width of "
+            f"{ratio(length[row], facts.width_m[row])} times its width of "
             f"{show_value(facts.width_m[row])} m; measure at least ten widths."
         ),
     )

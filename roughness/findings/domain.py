@@ -6,7 +6,8 @@ import numpy as np
 
 from roughness.findings.facts import Facts, Flags, Numbers
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule
-from roughness.quantities.printing import rounded, show_n, show_value
+from roughness.findings.wording import ratio
+from roughness.quantities.printing import show_n, show_value
 
 LARGEST_RADIUS_M: Final = 4.6  # 15 ft
 LITTLE_TESTED_SLOPE: Final = 0.002
@@ -26,9 +27,9 @@ def _radius(facts: Facts) -> Numbers:
 
 
 def _grains_deep(facts: Facts, row: int) -> str:
-    deep = float(_radius(facts)[row]) * 1000 / float(facts.d84_mm[row])
+    deep = ratio(_radius(facts)[row] * 1000, facts.d84_mm[row])
     named = "Mean depth" if np.isnan(facts.hydraulic_radius_m[row]) else "Hydraulic radius"
-    return f"{named} is {rounded(deep, 1)} times the d84 of {show_value(facts.d84_mm[row])} mm"
+    return f"{named} is {deep} times the d84 of {show_value(facts.d84_mm[row])} mm"
 
 
 def _submerged_less_than(facts: Facts, grains: float) -> Flags:
@@ -145,10 +146,10 @@ def supercritical_reach(facts: Facts) -> Case:
     brake = facts.n_best**2 * G * facts.depth_m
 
     def says(row: int) -> str:
-        froude = float(np.sqrt(drive[row] / brake[row]))
+        froude = ratio(np.sqrt(drive[row]), np.sqrt(brake[row]))
         return (
             f"With n {show_n(facts.n_best[row])} the flow would have a Froude number of "
-            f"{rounded(froude, 1)}; natural reaches seldom stay above 1, so n may be too low, or "
+            f"{froude}; natural reaches seldom stay above 1, so n may be too low, or "
             "slope or depth wrong."
         )
 

@@ -6,7 +6,7 @@ words are the empty string. A column with a default may also be left out: one un
 value then stands for all rows.
 
 A part whose bed and banks are told apart has a row for each segment, with its name in
-``segment``, and a row for the whole part whose factors are unknown.
+``segment``, and a row for the whole part whose factors are unknown (`nothing_chosen`).
 """
 
 from collections.abc import Mapping
@@ -15,7 +15,7 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import NDArray
 
-from roughness.survey.words import Factor
+from roughness.survey.words import FACTORS, Factor
 
 Numbers = NDArray[np.float64]
 Flags = NDArray[np.bool_]
@@ -119,3 +119,26 @@ class Facts:
         """Whether the row stands for a whole part and not for its bed or banks."""
         rows: Flags = self.segment == ""
         return rows
+
+
+def nothing_chosen(rows: int) -> dict[Factor, FactorFacts]:
+    """Return ``rows`` rows in which no factor is known: a whole part told apart by segments."""
+    number, word, flag = np.full(rows, np.nan), np.full(rows, ""), np.zeros(rows, dtype=bool)
+    unknown = FactorFacts(
+        grade=word,
+        rank=number,
+        low=number,
+        best=number,
+        high=number,
+        published_low=number,
+        published_high=number,
+        own_best=flag,
+        noted=flag,
+        lower_bound=flag,
+        measured_says=word,
+        candidates=word,
+        near=word,
+        gap_low=number,
+        gap_high=number,
+    )
+    return dict.fromkeys(FACTORS, unknown)

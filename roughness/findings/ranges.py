@@ -8,7 +8,7 @@ from roughness.findings.facts import FactorFacts, Facts, Flags
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule, rule_of_each
 from roughness.findings.wording import FACTOR_WORDS, in_words, starting
 from roughness.quantities.printing import rounded, show_n, show_value
-from roughness.survey.words import FACTORS, Factor
+from roughness.survey.words import FACTORS, NOT_ON_FLOOD_PLAINS, Factor
 
 # Sums such as 0.1 + 0.2 carry noise in the 17th digit; no table has steps this small.
 NOISE: Final = 1e-12
@@ -83,8 +83,11 @@ def outside_published_range_noted(facts: Facts, factor: Factor) -> Case:
 def own_value_without_note(facts: Facts, factor: Factor) -> Case:
     """Where no table backs a value, only a note can."""
     chosen = facts.factors[factor]
+    unbacked = ~np.isnan(chosen.best) & np.isnan(chosen.published_low) & ~chosen.noted
+    if factor in NOT_ON_FLOOD_PLAINS:
+        unbacked = unbacked & ~facts.on_flood_plain
     return Case(
-        chosen.own_best & np.isnan(chosen.published_low) & ~chosen.noted,
+        unbacked,
         lambda row: (
             f"{starting(FACTOR_WORDS[factor])} {show_value(chosen.best[row])} rests on no "
             "published value and on no note; say in a note where it comes from."

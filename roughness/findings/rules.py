@@ -8,12 +8,13 @@ from roughness.findings import (
     criteria,
     domain,
     double_counting,
+    over_survey,
     ranges,
     setting_and_flow,
     where_it_grows,
 )
 from roughness.findings.facts import Facts
-from roughness.findings.rule import LEVELS, Case, Finding, Rule
+from roughness.findings.rule import LEVELS, Case, Finding, Rule, RuleInWords
 from roughness.quantities.foreign_text import printable
 from roughness.survey.words import Factor
 
@@ -84,3 +85,8 @@ def find(facts: Facts) -> list[list[Finding]]:
                     says = f"{printable(name)}: {says}"
                 found[row].append(Finding(met.rule.level, met.rule.key, met.factor, says))
     return found
+
+
+def rule_table() -> tuple[RuleInWords, ...]:
+    """Return every rule's key, level, meaning and source: one estimate's, then a survey's."""
+    return (*RULES, *over_survey.RULES)

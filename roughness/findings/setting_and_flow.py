@@ -37,7 +37,7 @@ def flood_plain_mostly_blocked(facts: Facts) -> Case:
     return Case(
         facts.on_flood_plain & (blocked > MOST_BLOCKED) & ~np.isnan(chosen.best),
         lambda row: (
-            f"{show_value(blocked[row])} % of the flood plain is blocked, and the published "
+            f"Of the flood plain {show_value(blocked[row])} % is blocked, and the published "
             "grades end at 50 %; take the obstruction out of the flow area or split the part."
         ),
     )
@@ -84,24 +84,22 @@ def lower_regime_own_value(facts: Facts) -> Case:
 @rule(
     "regime-not-settled",
     "ask",
-    meaning="the regime of a sand bed is in transition, unknown or not said",
+    meaning="the regime of a sand bed is in transition or unknown",
     source=SAND_TABLE,
     about="base",
 )
 def regime_not_settled(facts: Facts) -> Case:
     """In transition one flow can have two values of n."""
     regime = facts.factors["base"].word("regime")
-    open_ = (regime == "transition") | (regime == "unknown") | (regime == "")
-
-    def says(row: int) -> str:
-        met = np.broadcast_to(regime, (len(facts),))[row]
-        told = {"transition": "is in transition", "unknown": "is unknown"}.get(met, "was not said")
-        return (
-            f"The regime of the sand bed {told}, and the table's values hold for upper regime "
-            "only; find the regime at this flow, or let the range cover both and say so in a note."
-        )
-
-    return Case(_sand_bed(facts) & open_, says)
+    told = {"transition": "is in transition", "unknown": "is unknown"}
+    return Case(
+        _sand_bed(facts) & ((regime == "transition") | (regime == "unknown")),
+        lambda row: (
+            f"The regime of the sand bed {told[regime[row]]}, and the table's values hold for "
+            "upper regime only; find the regime at this flow, or let the range cover both and say "
+            "so in a note."
+        ),
+    )
 
 
 @rule(

@@ -7,7 +7,8 @@ import numpy as np
 from roughness.findings.facts import Facts, Numbers
 from roughness.findings.ranges import NOISE
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule
-from roughness.quantities.printing import rounded, show_value
+from roughness.findings.wording import ratio
+from roughness.quantities.printing import show_value
 
 WIDE: Final = 30.0  # width over depth
 NARROW: Final = 10.0
@@ -38,9 +39,9 @@ def bank_plants_against_shape(facts: Facts) -> Case:
 
     def says(row: int) -> str:
         usual = MOST_IF_WIDE if wide[row] else MOST_IF_NARROW
-        ratio = rounded(float(facts.width_m[row] / depth[row]), 0)
+        times = ratio(facts.width_m[row], depth[row], 0)
         return (
-            f"Plants stand on the banks alone and the section is {ratio} times as wide as deep, "
+            f"Plants stand on the banks alone and the section is {times} times as wide as deep, "
             f"but vegetation adds {show_value(chosen.best[row])}; up to {show_value(usual)} is "
             "usual there. Lower it, tell bed and banks apart, or say why in a note."
         )

@@ -1,7 +1,9 @@
 """How grades and factors are called inside the sentences of findings."""
 
 from roughness.quantities.foreign_text import printable
-from roughness.quantities.printing import enumerate_words
+from roughness.quantities.printing import enumerate_words, rounded
+
+MOST_TIMES = 1e6
 
 FACTOR_WORDS = {
     "base": "base value",
@@ -31,3 +33,14 @@ def both(keys: str) -> str:
 def starting(sentence: str) -> str:
     """Return the sentence with its first letter as a capital."""
     return sentence[:1].upper() + sentence[1:]
+
+
+def ratio(of: float, to: float, places: int = 1) -> str:
+    """Print how many times ``to`` goes into ``of``; absurd measurements stay readable.
+
+    >>> ratio(7.0, 2.0), ratio(1.0, 1e-300)
+    ('3.5', 'over a million')
+    """
+    if not of <= MOST_TIMES * to:
+        return "over a million"
+    return rounded(float(of) / float(to), places)
