@@ -94,7 +94,7 @@ def read_key(raw: bytes, where: str) -> str:
 
 def _read_toml(raw: bytes, refuse: Refuse) -> dict[str, Any]:
     if len(raw) > LARGEST:
-        raise refuse("", f"{len(raw)} bytes are too many", f"at most {LARGEST} are due")
+        raise refuse("", "it is too large", f"at most {LARGEST} bytes are due")
     try:
         text = decoded(raw, "")
     except InputError as error:
