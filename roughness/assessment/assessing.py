@@ -150,15 +150,11 @@ def _segment_zones(handbook: Handbook, judgement: Judgement, where: str) -> list
 
 
 def _envelope(zones: Sequence[_Zone]) -> Range:
-    each = [additive.envelope(zone.ranges) for zone in zones]
-    if len(each) == 1:
-        return each[0]
-    percents = np.array([zone.percent for zone in zones])
-    low, best, high = (
-        float(hydraulics.horton_einstein(np.array([getattr(n, side) for n in each]), percents))
-        for side in ("low", "best", "high")
+    if len(zones) == 1:
+        return additive.envelope(zones[0].ranges)
+    return additive.envelope_of_segments(
+        [zone.columns for zone in zones], [zone.percent for zone in zones]
     )
-    return Range(low, best, high)
 
 
 def _spread_and_shares(

@@ -142,16 +142,14 @@ def _grade(
             wanted="name one of them as the grade",
         )
     if left.beyond:
-        raise InputError(
-            f"{left.says} has no published grade",
-            where=where,
-            wanted="take the obstruction out of the flow area, or split the part",
-        )
+        raise InputError(f"{left.says} has no published grade", where=where, wanted=left.advice)
     if _own_numbers(choice):
         return None
     known = ", ".join(g.key for g in handbook.grades(setting, factor))
-    said = f"{left.says} decides no grade in {handbook.key}" if left.says else "nothing was chosen"
-    raise InputError(said, where=where, wanted=f"name one of {known}")
+    if left.says:
+        said = f"{left.says} decides no grade"
+        raise InputError(said, where=where, wanted=f"{left.advice} ({known})")
+    raise InputError("nothing was chosen", where=where, wanted=f"name one of {known}")
 
 
 def _refuse_unanswered_sand(

@@ -1,0 +1,107 @@
+"""Whether a survey hangs together: trails, noted heads, handbooks, findings."""
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from roughness.desk.folder import SurveyFolder
+from roughness.desk.rows import Row, rows
+from roughness.errors import RoughnessError
+from roughness.handbook.parsing import hash_of
+from roughness.shelf.editions import shipped_editions
+from roughness.shelf.folders import contents
+from roughness.shelf.handbooks import unusable_handbooks
+from roughness.trail.data import NotedReach
+from roughness.trail.reading import Fault, Trail
+
+
+@dataclass(frozen=True)
+class Checked:
+    """What `check` found."""
+
+    broken: tuple[Fault, ...]
+    """Line 0 where a whole file is meant."""
+    torn: tuple[str, ...]
+    """Files whose last line was cut off; the next writer moves the rest aside."""
+    rows: tuple[Row, ...]
+
+    @property
+    def intact(self) -> bool:
+        """Whether everything that was recorded is there and unchanged."""
+        return not self.broken
+
+    @property
+    def passed(self) -> bool:
+        """Whether nothing is broken and no ``stop`` stands."""
+        return self.intact and not any(row.stands_stopped for row in self.rows)
+
+
+def check(survey: SurveyFolder) -> Checked:
+    """Verify all trails, what ties them together, and the handbooks; writes nothing."""
+    trails = list(_trails(survey))
+    faults = [fault for _, trail, _ in trails for fault in _of_trail(trail)]
+    faults += [fault for noted, trail, why in trails for fault in _tied(survey, noted, trail, why)]
+    faults += _of_handbooks(survey)
+    torn = tuple(trail.file for _, trail, _ in trails if trail.torn)
+    return Checked(tuple(dict.fromkeys(faults)), torn, tuple(rows(survey)))
+
+
+def _trails(survey: SurveyFolder) -> Iterator[tuple[NotedReach | None, Trail, str]]:
+    yield None, survey.trail(), ""
+    for noted in survey.state.reaches:
+        try:
+            yield noted, survey.reach_trail(noted.reach), ""
+        except RoughnessError as error:
+            yield noted, Trail(f"reaches/{noted.file}.jsonl"), str(error)
+
+
+def _of_trail(trail: Trail) -> Iterator[Fault]:
+    yield from trail.broken
+    if trail.newer:
+        yield trail.newer
+    if trail.to_be_merged:
+        yield Fault(trail.file, 0, f"to be merged: it has {len(trail.heads)} ends")
+
+
+def _tied(
+    survey: SurveyFolder, noted: NotedReach | None, trail: Trail, why: str
+) -> Iterator[Fault]:
+    """Compare a reach's trail with what the survey's own trail noted of it."""
+    if noted is None:
+        yield from survey.state.unusable
+        return
+    if why:
+        yield Fault(trail.file, 0, why)
+        return
+    if noted.first_line not in trail.by_hash:
+        yield Fault(trail.file, 1, "it is not the trail that the survey began for this reach")
+    elif trail.first and trail.first.data.get("survey") != survey.state.survey:
+        yield Fault(trail.file, 1, "it belongs to another survey")
+    for line, heads in survey.state.heads:
+        head = heads.heads.get(noted.reach)
+        if head is not None and head not in trail.by_hash:
+            what = f"lines missing (truncated or not yet synced): the {heads.why} of {line.at}"
+            yield Fault(trail.file, 0, f"{what} noted a line that is not there")
+    yield from survey.reach_state(noted.reach).unusable
+
+
+def _of_handbooks(survey: SurveyFolder) -> Iterator[Fault]:
+    for error in unusable_handbooks(survey.handbooks):
+        yield Fault(error.where or "handbooks", 0, f"{error.what}; {error.wanted}")
+    known = {
+        key: {hash_of(path.read_bytes())} | shipped_editions().get(key, frozenset())
+        for key, path in contents(survey.handbooks).files.items()
+    }
+    for row in rows(survey):
+        if row.place is None or row.place.state is None:
+            continue
+        served = row.place.handbook
+        editions = known.get(served.key, set()) | {served.sha256}
+        for chosen in row.place.state.choices.values():
+            for factor, entry in chosen.items():
+                if entry.handbook_sha256 not in editions:
+                    yield Fault(
+                        f"handbooks ({served.key})",
+                        0,
+                        f"{factor} of {row.place.part.part} in {row.reach.reach} was chosen from"
+                        " another edition of this handbook, which is not here",
+                    )

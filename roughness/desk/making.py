@@ -1,0 +1,98 @@
+"""New surveys: empty, from a list of reaches, or a copy of the demo survey."""
+
+import secrets
+import shutil
+from collections.abc import Sequence
+from pathlib import Path
+
+from roughness.desk.folder import USUAL_HANDBOOK, SurveyFolder
+from roughness.desk.recording import Recorder, now
+from roughness.errors import InputError, NotKeptError
+from roughness.quantities.foreign_text import checked_name, printable
+from roughness.shelf.handbooks import load_handbook
+from roughness.shelf.places import demo_folder
+from roughness.survey.stream import Reach
+from roughness.trail.locking import SurveyLock
+from roughness.trail.naming import survey_trail
+from roughness.trail.writing import begin
+
+# Trails are compared byte by byte; two that grew apart are united line by line.
+_GIT_ATTRIBUTES = "* -text\n*.jsonl merge=union\n"
+
+
+def new_survey(
+    folder: Path,
+    by: str,
+    *,
+    name: str | None = None,
+    stream: str | None = None,
+    handbook: str = USUAL_HANDBOOK,
+    reaches: Sequence[Reach] = (),
+) -> SurveyFolder:
+    """Make a survey in ``folder``, which must be empty or not there yet.
+
+    Raises
+    ------
+    InputError
+        Where the folder holds something, a name does not fit or the handbook is not known.
+    NotKeptError
+        Where the disk did not take it; what was made is taken away again.
+    """
+    load_handbook(handbook)
+    name = checked_name(name or folder.resolve().name, "name of the survey")
+    _refuse_full(folder)
+    made_here = not folder.exists()
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        return _filled(folder, by, name, stream, handbook, reaches)
+    except (OSError, NotKeptError) as error:
+        if made_here:
+            shutil.rmtree(folder, ignore_errors=True)
+        if isinstance(error, NotKeptError):
+            raise
+        raise NotKeptError(
+            f"{printable(str(folder))}: {error.strerror}; nothing was made"
+        ) from None
+
+
+def _filled(
+    folder: Path,
+    by: str,
+    name: str,
+    stream: str | None,
+    handbook: str,
+    reaches: Sequence[Reach],
+) -> SurveyFolder:
+    for inside in ("reaches", "evidence", "handbooks"):
+        (folder / inside).mkdir()
+    (folder / ".gitattributes").write_text(_GIT_ATTRIBUTES, encoding="utf-8", newline="\n")
+    first = {"format": 1, "survey": secrets.token_hex(16), "name": name}
+    begin(survey_trail(folder), first, by=by, at=now(), lock=SurveyLock(folder))
+    survey = SurveyFolder(folder)
+    pen = Recorder(survey, by)
+    pen.describe(**({"stream": stream} if stream else {}), handbook=handbook)
+    for reach in reaches:
+        pen.add_reach(reach)
+    return survey
+
+
+def copy_demo(folder: Path) -> SurveyFolder:
+    """Copy the invented demo survey to ``folder``, which must be empty or not there yet.
+
+    Raises
+    ------
+    InputError
+        Where the folder holds something.
+    """
+    _refuse_full(folder)
+    shutil.copytree(demo_folder(), folder, dirs_exist_ok=True)
+    return SurveyFolder(folder)
+
+
+def _refuse_full(folder: Path) -> None:
+    if folder.is_symlink() or (folder.exists() and not folder.is_dir()):
+        raise InputError("it is no folder", where=printable(str(folder)), wanted="name a new one")
+    if folder.exists() and any(folder.iterdir()):
+        raise InputError(
+            "the folder is not empty", where=printable(str(folder)), wanted="name a new one"
+        )
