@@ -61,9 +61,15 @@ def _factor_facts(handbook: Handbook, setting: Setting, entry: Resolved) -> Fact
         lower_bound=np.array([bool(grade and grade.lower_bound)]),
         measured_says=_word(left.says),
         candidates=_word(" ".join(left.grades)),
+        candidates_rank=_number(
+            max((handbook.rank(setting, entry.factor, key) for key in left.grades), default=None)
+        ),
         near=_word(" ".join(left.near)),
         gap_low=_number(gap[0] if gap else None),
         gap_high=_number(gap[1] if gap else None),
+        kinds=_word(
+            " ".join(sorted({m.plants for m in grade.measured if m.plants})) if grade else ""
+        ),
         numbers={n: _number(criteria.get(n)) for n in names if _KINDS[n] is float},
         words={n: _word(_yes_or_no(criteria.get(n))) for n in names if _KINDS[n] is str},
     )

@@ -30,12 +30,19 @@ def _outside(chosen: FactorFacts) -> Flags:
 def _says_outside(facts: Facts, factor: Factor, row: int) -> str:
     chosen = facts.factors[factor]
     low, best, high = (show_value(c[row]) for c in (chosen.low, chosen.best, chosen.high))
-    limits = (show_value(c[row]) for c in (chosen.published_low, chosen.published_high))
+    least, most = (show_value(c[row]) for c in (chosen.published_low, chosen.published_high))
+    published = f"published {least} to {most}" if least != most else f"single published {least}"
     grade = f" for '{in_words(chosen.grade[row])}'" if chosen.grade[row] else ""
     return (
-        f"{starting(FACTOR_WORDS[factor])} {best}, from {low} to {high}, leaves the published "
-        f"{' to '.join(dict.fromkeys(limits))}{grade}"
+        f"{starting(FACTOR_WORDS[factor])} {best}, from {low} to {high}, leaves the "
+        f"{published}{grade}"
     )
+
+
+def _beyond(n: float, limit: float, side: str) -> str:
+    """Say that n is above or below a limit, also where both print alike."""
+    just = "just " if show_n(n) == show_n(limit) else ""
+    return f"n {show_n(n)} is {just}{side} {show_n(limit)}"
 
 
 @rule_of_each(
@@ -152,7 +159,7 @@ def n_low_for_channel(facts: Facts) -> Case:
     return Case(
         low & facts.in_channel & facts.whole_part,
         lambda row: (
-            f"n {show_n(facts.n_best[row])} is below {LEAST_IN_CHANNELS}, the least measured in "
+            f"{_beyond(facts.n_best[row], LEAST_IN_CHANNELS, 'below')}, the least measured in "
             "natural channels; say in a note what makes this one so smooth, a lining for one."
         ),
     )
@@ -172,7 +179,7 @@ def n_high_for_channel(facts: Facts) -> Case:
         slope = facts.slope[row]
         told = "of unknown slope" if np.isnan(slope) else f"of slope {show_value(slope)}"
         return (
-            f"n {show_n(facts.n_best[row])} is above {MOST_IN_CHANNELS} in a channel {told}, more "
+            f"{_beyond(facts.n_best[row], MOST_IN_CHANNELS, 'above')} in a channel {told}, more "
             "than is measured where slopes are under 0.02; check that nothing is counted twice."
         )
 
@@ -191,8 +198,8 @@ def n_high_for_flood_plain(facts: Facts) -> Case:
     return Case(
         high & facts.on_flood_plain & facts.whole_part,
         lambda row: (
-            f"n {show_n(facts.n_best[row])} is above 0.20, the most measured on wooded flood "
-            "plains; check that nothing is counted twice, or say in a note why it is more."
+            f"{_beyond(facts.n_best[row], MOST_ON_FLOOD_PLAINS, 'above')}, the most measured on "
+            "wooded flood plains; check that nothing is counted twice, or say in a note why."
         ),
     )
 

@@ -358,6 +358,16 @@ def test_a_froude_number_is_told_with_one_decimal() -> None:
     assert "Froude number of 2.1;" in said[0]
 
 
+def test_a_value_that_prints_like_its_limit_is_said_to_be_just_beyond_it() -> None:
+    (finding,) = findings(PLAIN | {"n_best": 0.203, "n_high": 0.3})
+    assert finding.says.startswith("n 0.20 is just above 0.20, the most measured")
+
+
+def test_a_single_published_value_is_called_one() -> None:
+    (finding,) = findings(SAND | {"base.high": 0.025})
+    assert "leaves the single published 0.022 for 'sand'" in finding.says
+
+
 def test_a_finding_about_a_segment_starts_with_its_name() -> None:
     (finding,) = findings({"segment": "left\x1bbank", "base.high": 0.04})
     assert finding.says.startswith("left\\u001bbank: Base value 0.032")
