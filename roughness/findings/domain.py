@@ -17,7 +17,7 @@ GRAINS_IN_THE_FLOW: Final = 1.2
 G: Final = 9.80665  # m/s2, standard
 NOT_NATURAL: Final = ("concrete", "concrete-smooth", "rock-cut")
 
-LARGE_ROUGHNESS: Final = "Bathurst 1981 and Li & Simons 1981, memory"
+LARGE_ROUGHNESS: Final = "Bathurst, Li & Simons 1981, memory"
 
 
 def _radius(facts: Facts) -> Numbers:

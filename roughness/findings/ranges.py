@@ -150,8 +150,8 @@ def range_narrow(facts: Facts) -> Case:
 @rule(
     "n-low-for-channel",
     "ask",
-    meaning="n of a channel is below 0.017, less than was measured in natural channels",
-    source="measured natural channels as Barnes 1967 (USGS WSP 1849); the limit from memory",
+    meaning="n of a channel is below 0.017, lower than natural channels are measured",
+    source="limit from memory; the lowest n read in Barnes 1967 (USGS WSP 1849) is 0.024",
 )
 def n_low_for_channel(facts: Facts) -> Case:
     """Ask: a smooth lining explains it, in a natural stream it is rarely right."""
@@ -159,8 +159,8 @@ def n_low_for_channel(facts: Facts) -> Case:
     return Case(
         low & facts.in_channel & facts.whole_part,
         lambda row: (
-            f"{_beyond(facts.n_best[row], LEAST_IN_CHANNELS, 'below')}, the least measured in "
-            "natural channels; say in a note what makes this one so smooth, a lining for one."
+            f"{_beyond(facts.n_best[row], LEAST_IN_CHANNELS, 'below')}, lower than natural "
+            "channels are measured; say in a note what makes this one so smooth, a lining for one."
         ),
     )
 
