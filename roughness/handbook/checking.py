@@ -1,6 +1,7 @@
 """What a well-formed handbook file can still get wrong, each as one sentence with its place."""
 
 import itertools
+import math
 from collections import Counter
 from collections.abc import Callable, Iterator
 from typing import Final
@@ -123,7 +124,7 @@ def check_classes(table: FactorTable, shape: FactorShape, place: str, refuse: Re
                 continue
             raise refuse(
                 f"{place}.{named}",
-                f"no class holds what lies between {show_value(low)} and {show_value(high)}",
+                f"no class holds {_stretch(low, high)}",
                 "close the gap, or set measured_gaps = true where the publication has it so",
             )
 
@@ -168,6 +169,14 @@ def _tables(handbook: Handbook) -> Iterator[tuple[Setting, Factor, FactorTable]]
 
 def _kinds(table: FactorTable) -> set[tuple[Criterion, Plants | None]]:
     return {(m.criterion, m.plants) for grade in table.grades for m in grade.measured}
+
+
+def _stretch(low: float, high: float) -> str:
+    if low == high:
+        return show_value(low)
+    if high == math.inf:
+        return f"what lies above {show_value(low)}"
+    return f"what lies between {show_value(low)} and {show_value(high)}"
 
 
 def _said(low: float, high: float, criterion: Criterion, shape: FactorShape) -> bool:
