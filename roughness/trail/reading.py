@@ -11,7 +11,7 @@ from dataclasses import dataclass, field
 from pathlib import Path
 
 from roughness.errors import InputError, RecordError
-from roughness.trail.lines import FORMAT, Line, parsed, without_line_end
+from roughness.trail.lines import FORMAT, Line, hash_of, parsed, without_line_end
 from roughness.trail.naming import shown
 
 
@@ -101,33 +101,47 @@ def verified(raw: bytes, file: str, known: Trail | None = None) -> Trail:
     digest = hashlib.sha256(memoryview(raw)[:size])
     whole, torn = raw[:size], raw[size:]
     before = known if known is not None and _only_grew(known, whole) else Trail(file)
-    lines, faults = list(before.lines), []
-    for number, stored in enumerate(
-        whole[before.size :].split(b"\n")[:-1], start=before.lines[-1].number + 1 if lines else 1
-    ):
+    new, unreadable = _parsed_lines(whole[before.size :], before)
+    lines, by_hash = (*before.lines, *new), dict(before.by_hash)
+    hidden = {stored for stored, _ in unreadable}
+    broken = [*_graph_faults(new, by_hash, hidden, file), *_first_line_faults(lines, file)]
+    newer = _newer_format(lines, file)
+    if not newer:  # a newer version's lines need not look as this one's, only hang together
+        broken += [fault for _, fault in unreadable]
+    broken.sort(key=lambda fault: fault.line)
+    return Trail(
+        file,
+        lines,
+        _heads(lines),
+        torn,
+        tuple(broken),
+        newer,
+        size,
+        digest.hexdigest(),
+        by_hash,
+    )
+
+
+def _parsed_lines(whole: bytes, before: Trail) -> tuple[list[Line], list[tuple[str, Fault]]]:
+    """Return the lines, and of those that cannot be read the hash and what is wrong."""
+    lines, unreadable = [], []
+    start = before.lines[-1].number + 1 if before.lines else 1
+    for number, ended in enumerate(whole.split(b"\n")[:-1], start):
+        stored = without_line_end(ended)
         try:
-            lines.append(parsed(without_line_end(stored), number))
+            lines.append(parsed(stored, number))
         except InputError as error:
             what = str(error).replace("at line 1, column", "at column")
-            faults.append(Fault(file, number, what))
-    by_hash = dict(before.by_hash)
-    faults += _graph_faults(lines, lines[len(before.lines) :], by_hash, file)
-    newer = _newer_format(lines, file)
-    # What a newer version writes need not follow this version's rules.
-    broken = () if newer else tuple(sorted(faults, key=lambda fault: fault.line))
-    heads = _heads(lines)
-    return Trail(file, tuple(lines), heads, torn, broken, newer, size, digest.hexdigest(), by_hash)
+            unreadable.append((hash_of(stored), Fault(before.file, number, what)))
+    return lines, unreadable
 
 
 def _end_of_whole_lines(raw: bytes) -> int:
     end = raw.rfind(b"\n") + 1
-    # After a power cut a file can be as long as planned but hold NULs instead of the last
-    # line; no line that was kept holds one.
-    while end:
-        start = raw.rfind(b"\n", 0, end - 1) + 1
-        if b"\0" not in raw[start:end]:
-            break
-        end = start
+    # After a power cut a file can be as long as planned but run out in NULs instead of the
+    # last line; no line that was kept ends in one.
+    while raw.endswith((b"\0\n", b"\0\r\n"), 0, end):
+        end = raw.rfind(b"\n", 0, end - 1) + 1
     return end
 
 
@@ -138,8 +152,9 @@ def _only_grew(known: Trail, whole: bytes) -> bool:
 
 
 def _graph_faults(
-    lines: Sequence[Line], new: Sequence[Line], by_hash: dict[str, Line], file: str
+    new: Sequence[Line], by_hash: dict[str, Line], hidden: set[str], file: str
 ) -> Iterator[Fault]:
+    """Add the new lines to ``by_hash``; ``hidden`` are hashes of lines that cannot be read."""
     for line in new:
         if line.hash in by_hash:
             twice = by_hash[line.hash].number
@@ -147,9 +162,8 @@ def _graph_faults(
         else:
             by_hash[line.hash] = line
     for line in new:
-        if any(name not in by_hash for name in line.prev):
+        if any(name not in by_hash and name not in hidden for name in line.prev):
             yield Fault(file, line.number, "it comes after a line that is not there or was changed")
-    yield from _first_line_faults(lines, file)
 
 
 def _first_line_faults(lines: Sequence[Line], file: str) -> Iterator[Fault]:

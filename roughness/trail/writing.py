@@ -101,13 +101,13 @@ def append(
 
 
 def _refuse_read_only(trail: Trail) -> None:
-    if trail.newer:
-        raise RecordError(f"{trail.newer}; nothing was written")
     if trail.broken:
         more = f" (and {len(trail.broken) - 1} more)" if len(trail.broken) > 1 else ""
         raise BrokenTrailError(
             f"{trail.broken[0]}{more}; the trail is read-only until somebody decides"
         )
+    if trail.newer:
+        raise RecordError(f"{trail.newer}; nothing was written")
     if not trail.lines:
         raise RecordError(f"{trail.file} has no first line yet; nothing was written")
     if trail.to_be_merged:
