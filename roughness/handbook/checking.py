@@ -57,7 +57,9 @@ def check_settings(shape: HandbookShape, refuse: Refuse) -> None:
                 wanted = f"a {setting} needs {enumerate_words(factors_of(setting))}"
                 raise refuse(f"{setting}.{factor}", f"the table of {factor} is missing", wanted)
             if factor not in shape.symbols:
-                raise refuse(f"symbols.{factor}", "the symbol is missing", "such as n1")
+                raise refuse(
+                    f"symbols.{factor}", "the symbol is missing", f'such as {factor} = "n1"'
+                )
 
 
 def check_values(grade: Grade, factor: Factor, place: str, refuse: Refuse) -> None:

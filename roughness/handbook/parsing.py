@@ -25,7 +25,6 @@ from roughness.survey.words import FACTORS, Factor, Plants, Setting, factors_of
 LARGEST: Final = 1 << 20
 _AT = re.compile(r" \(at (?:line (\d+), column (\d+)|end of document)\)$")
 _MESSAGES: Final[dict[str, str]] = {
-    "missing": "it is missing",
     "empty_text": "it is empty",
     "control": "it holds a control or direction character",
     "float_type": "a number is due",
@@ -105,8 +104,11 @@ def _read_toml(raw: bytes, refuse: Refuse) -> dict[str, Any]:
         return tomllib.loads(text)
     except RecursionError:
         raise refuse("", "it is nested too deep", "a handbook in TOML is due") from None
-    except ValueError as error:
+    except tomllib.TOMLDecodeError as error:
         raise _not_toml(str(error), text, refuse) from None
+    except ValueError:
+        # Python reads no whole number of thousands of digits, and TOML names no place for it.
+        raise refuse("", "it holds a number of thousands of digits", "shorten it") from None
 
 
 def _not_toml(message: str, text: str, refuse: Refuse) -> HandbookError:
@@ -131,12 +133,12 @@ def _first_fault(error: ValidationError, document: dict[str, Any], refuse: Refus
     if "[key]" in loc:
         known = nearest(str(loc[-2]), FACTORS)
         return refuse(place, "this name is not known", f"{known}?" if known else "leave it out")
-    if loc[-1] == "short" and kind == "string_too_long":
+    if kind == "missing":
+        return refuse(place, "it is missing", "")
+    if loc[-1] == "short" and kind == "too_long":
         return refuse(place, "it is too long", f"at most {LONGEST_SHORT} characters are due")
-    given = fault["input"]
-    what = f"{printable(repr(given))[:60]} will not do" if kind != "missing" else "it is missing"
     wanted = _MESSAGES.get(kind, fault["msg"][:1].lower() + fault["msg"][1:])
-    return refuse(place, what, "it must be there" if kind == "missing" else wanted)
+    return refuse(place, f"{printable(repr(fault['input']))[:60]} will not do", wanted)
 
 
 def _names_beside(loc: tuple[int | str, ...]) -> list[str]:
