@@ -59,27 +59,34 @@ class FactorShape:
         In the angle the quantile of a triangular factor is smooth up to both ends: its
         branches are a sine and a cosine.
         """
+        width = self.width
+        if not width.any():
+            return self.low + np.zeros_like(angle)
         sine = np.sin(angle)
         if self.uniform:
-            return np.asarray(self.low + self.width * sine * sine)
-        rising = self.low + sine * np.sqrt(self.width * (self.best - self.low))
-        falling = self.high - np.cos(angle) * np.sqrt(self.width * (self.high - self.best))
-        before_mode = sine * sine * self.width <= self.best - self.low
+            return np.asarray(self.low + width * sine * sine)
+        up = self.best - self.low
+        rising = self.low + sine * np.sqrt(width * up)
+        falling = self.high - np.cos(angle) * np.sqrt(width * (self.high - self.best))
+        before_mode = sine * sine * width <= up
         return np.asarray(np.where(before_mode, rising, falling))
 
     def below(self, value: Floats) -> Floats:
-        """Return the probability of at most ``value``; the factor has a width."""
+        """Return the probability of at most ``value``, for one reach and a factor with a width."""
         if self.uniform:
-            return np.asarray(np.clip((value - self.low) / self.width, 0.0, 1.0))
+            return np.clip((value - self.low) / self.width, 0.0, 1.0)
         up, down = self.best - self.low, self.high - self.best
-        above_low = np.clip(value, self.low, self.best) - self.low
-        below_high = self.high - np.clip(value, self.best, self.high)
-        share = np.where(up > 0, above_low**2 / (self.width * np.where(up > 0, up, 1.0)), 0.0)
-        fallen = np.where(down > 0, below_high**2 / (self.width * np.where(down > 0, down, 1.0)), 0)
-        return np.asarray(share + down / self.width - fallen)
+        share = np.full_like(value, down / self.width)
+        if up > 0:
+            above_low = np.clip(value - self.low, 0.0, up)
+            share += above_low * (above_low / up) / self.width
+        if down > 0:
+            below_high = np.clip(self.high - value, 0.0, down)
+            share -= below_high * (below_high / down) / self.width
+        return share
 
     def shortfall(self, value: Floats) -> Floats:
-        """Return E[max(value - X, 0)], the density integrated twice; X has a width."""
+        """Return E[max(value - X, 0)], for one reach and a factor with a width."""
         above_low = np.clip(value - self.low, 0.0, None)
         if self.uniform:
             inside = np.minimum(above_low, self.width)
@@ -87,8 +94,9 @@ class FactorShape:
         up, down = self.best - self.low, self.high - self.best
         rising = np.minimum(above_low, up)
         falling = np.clip(self.high - value, 0.0, None)
-        left = rising**3 / (3 * self.width * np.where(up > 0, up, 1.0))
-        right = falling**3 / (3 * self.width * np.where(down > 0, down, 1.0))
+        # Divided before it is multiplied: a side may be too short for its product.
+        left = rising**2 * (rising / (up if up > 0 else 1.0)) / (3 * self.width)
+        right = falling**2 * (falling / (down if down > 0 else 1.0)) / (3 * self.width)
         return np.where(value <= self.best, left, value - self.mean + right)
 
     def masses(self, step: float) -> Floats:

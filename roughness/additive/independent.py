@@ -140,7 +140,8 @@ def placed_masses(live: Sequence[FactorShape], cells: int) -> tuple[Floats, Floa
     # Spread evenly over its cell, a mass has a twelfth of the step squared more variance.
     grid_variance = masses @ (offsets - mean) ** 2 + step**2 / 12
     drawn_together = np.sqrt(sum(float(factor.variance) for factor in live) / grid_variance)
-    return low + mean + (offsets - mean) * drawn_together, masses
+    positions = low + mean + (offsets - mean) * drawn_together
+    return np.asarray(positions, dtype=np.float64), masses
 
 
 def _convolved(parts: Sequence[Floats], cells: int) -> Floats:

@@ -3,7 +3,7 @@
 F = (1 - d) F_independent + d F_together. In ``together`` every factor stands at the same
 quantile, so n there is known exactly for each p = sin(angle)^2; every n of the range belongs
 to one such angle. The percentiles are found along that angle: looked for on a net, on finer
-nets, and polished.
+nets, and polished by secants that stay inside a bracket.
 """
 
 from collections.abc import Sequence
@@ -14,7 +14,9 @@ from roughness.additive.combining import combine
 from roughness.additive.factor_shapes import FactorShape, Floats
 from roughness.additive.independent import Distribution, independent
 
-_FIRST_NET, _FINER_NET, _FINER_NETS, _POLISHES = 65, 17, 2, 2
+_FIRST_NET, _FINER_NET, _FINER_NETS = 65, 17, 2
+# Polishing ends when no percentile moves by more than this in n, mostly after two steps.
+_SETTLED, _MOST_STEPS = 2e-8, 60
 _AT_ONCE = 256
 # A width below this cannot move n by 1e-6 and is a point to the grid (never to `together`).
 _NO_WIDTH = 1e-12
@@ -61,12 +63,28 @@ class _Search:
 
     def quantiles(self, p: Floats) -> Floats:
         angle, slope = self._on_nets(p)
-        for _ in range(_POLISHES):
-            n = together(self.factors, angle)
-            missing = p - self._mixed(self.alone.below(n), angle)
-            angle = np.clip(angle + missing / slope, 0.0, np.pi / 2)
+        angle = self._polished(p, angle, slope)
         at_end = (p == 0) | (p == 1)
         return together(self.factors, np.where(at_end, np.arcsin(np.sqrt(p)), angle))
+
+    def _polished(self, p: Floats, angle: Floats, slope: Floats) -> Floats:
+        left, right = np.zeros_like(p), np.full_like(p, np.pi / 2)
+        n = together(self.factors, angle)
+        reached = self._mixed(self.alone.below(n), angle)
+        for _ in range(_MOST_STEPS):
+            left = np.where(reached <= p, angle, left)
+            right = np.where(reached >= p, angle, right)
+            step = angle + (p - reached) / slope
+            moved = np.where((step < left) | (step > right), (left + right) / 2, step)
+            n_before, n = n, together(self.factors, moved)
+            if np.abs(n - n_before).max() < _SETTLED:
+                return moved
+            now = self._mixed(self.alone.below(n), moved)
+            rise, run = now - reached, moved - angle
+            usable = rise * run > 0
+            slope = np.where(usable, rise / np.where(usable, run, 1.0), slope)
+            angle, reached = moved, now
+        return angle
 
     def _on_nets(self, p: Floats) -> tuple[Floats, Floats]:
         net = np.broadcast_to(np.linspace(0.0, np.pi / 2, _FIRST_NET), (len(p), _FIRST_NET))

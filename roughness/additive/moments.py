@@ -23,10 +23,10 @@ def mean_and_variance(factors: Sequence[FactorShape], dependence: float) -> Mome
     joint_mean, joint_variance = _together_moments(factors)
     d = dependence
     mean = (1 - d) * alone_mean + d * joint_mean
-    variance = (1 - d) * (alone_variance + (alone_mean - mean) ** 2) + d * (
-        joint_variance + (joint_mean - mean) ** 2
-    )
-    return mean, variance
+    within = (1 - d) * alone_variance + d * joint_variance
+    variance = within + d * (1 - d) * (alone_mean - joint_mean) ** 2
+    varies = np.any([factor.width > 0 for factor in factors], axis=0)
+    return mean, np.where(varies, variance, 0.0)
 
 
 def independent_moments(factors: Sequence[FactorShape]) -> Moments:
@@ -63,7 +63,8 @@ def panelled_angles(factors: Sequence[FactorShape]) -> Moments:
     half = np.diff(edges, axis=-1)[..., None] / 2
     angle = edges[..., :-1, None] + half * (1 + _NODES)
     weight = half * _WEIGHTS * np.sin(2 * angle)
-    return angle.reshape(*first.shape, -1), weight.reshape(*first.shape, -1)
+    flat = (*first.shape, (len(turns) + 1) * len(_NODES))
+    return angle.reshape(flat), weight.reshape(flat)
 
 
 def shares_of_variance(
