@@ -202,6 +202,7 @@ BROKEN_ROWS = [
     ('meander = "m"', 'bends = "m"', ["symbols.bends", "not known"]),
     ("[channel.variation]", "[channel.variety]", ["channel.variety", "'variation'"]),
     ('"< 10"', '"< 11"', ["channel.obstruction.blocked_percent", "overlap", "< 11"]),
+    ('"< 10"', '"<= 10"', ["channel.obstruction.blocked_percent", "<= 10 and >= 10 overlap"]),
     ('">= 10"', '"> 10"', ["channel.obstruction.blocked_percent", "no class holds 10;"]),
     ('"< 10"', '"< 9"', ["channel.obstruction.blocked_percent", "between 9 and 10"]),
     ('">= 10"', '">= 10 and < 60"', ["blocked_percent", "between 60 and 100"]),

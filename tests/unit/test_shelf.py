@@ -122,9 +122,10 @@ def test_every_unusable_file_of_a_folder_is_told(tmp_path: Path) -> None:
     put(tmp_path, "c.toml", shipped_text("scs-1963") + "# changed\n")
     put(tmp_path, "d.toml", agency_text("sound"))
     put(tmp_path, "e.toml", "#" * ((1 << 20) + 1))
+    put(tmp_path, "f.toml", 'title = "without a key"\n')
     told = [str(fault) for fault in unusable_handbooks(tmp_path)]
     assert [text.partition(":")[0] for text in told] == [
-        f"{tmp_path.name}/{name}.toml" for name in ("a", "b", "c", "e")
+        f"{tmp_path.name}/{name}.toml" for name in ("a", "b", "c", "e", "f")
     ]
 
 
@@ -241,7 +242,11 @@ def test_an_incomplete_installation_is_said_with_the_folder_that_is_missing(
     tmp_path: Path,
 ) -> None:
     package = tmp_path / "roughness"
-    shutil.copytree(TOP / "roughness", package, ignore=shutil.ignore_patterns("__pycache__"))
+    shutil.copytree(
+        TOP / "roughness",
+        package,
+        ignore=shutil.ignore_patterns("__pycache__", "tables", "demo_reaches"),
+    )
     done = subprocess.run(
         [sys.executable, "-c", ASK],
         cwd=tmp_path,
