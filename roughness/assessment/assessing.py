@@ -1,12 +1,12 @@
 """From a handbook and a judgement to an estimate."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
 
 import numpy as np
 
 from roughness import additive, findings, hydraulics
 from roughness.additive import Spread
+from roughness.assessment.accounting import account_of
 from roughness.assessment.estimate import (
     Estimate,
     FactorEstimate,
@@ -16,34 +16,19 @@ from roughness.assessment.estimate import (
 )
 from roughness.assessment.facts_of import facts_of
 from roughness.assessment.resolving import Resolved, resolve, shown_note
+from roughness.assessment.zones import Zone
 from roughness.errors import InputError
 from roughness.findings import Finding
+from roughness.findings.rule import LEVELS
 from roughness.handbook import Handbook
 from roughness.quantities.printing import show_value
 from roughness.quantities.ranges import Range
+from roughness.reasoning import sentences
 from roughness.survey.choices import Judgement, Measured
 from roughness.survey.words import FACTORS, Factor
 
 # Percentages of the wetted perimeter are paced or guessed: their sum may be off by this.
 _PERIMETER_SLACK = 1.0
-
-
-@dataclass(frozen=True, kw_only=True)
-class _Zone:
-    """A segment, or the whole part where there are none."""
-
-    name: str | None
-    percent: float
-    resolved: Mapping[Factor, Resolved]
-
-    @property
-    def ranges(self) -> dict[Factor, Range]:
-        return {factor: entry.range for factor, entry in self.resolved.items()}
-
-    @property
-    def columns(self) -> tuple[list[float], list[float], list[float]]:
-        ordered = [self.resolved[factor].range for factor in FACTORS]
-        return [r.low for r in ordered], [r.best for r in ordered], [r.high for r in ordered]
 
 
 def assess(handbook: Handbook, judgement: Judgement, where: str = "estimate") -> Estimate:
@@ -61,6 +46,7 @@ def assess(handbook: Handbook, judgement: Judgement, where: str = "estimate") ->
     zones = _zones(handbook, judgement, where)
     n = _envelope(zones)
     spread, shares = _spread_and_shares(zones, judgement)
+    found = _findings(handbook, judgement, zones, n)
     return Estimate(
         n=n,
         spread=spread,
@@ -70,8 +56,8 @@ def assess(handbook: Handbook, judgement: Judgement, where: str = "estimate") ->
             for zone, row in zip(zones, shares, strict=True)
             for factor, share in zip(FACTORS, row, strict=True)
         ),
-        findings=_findings(handbook, judgement, zones),
-        reasoning=(),
+        findings=found,
+        reasoning=sentences(account_of(handbook, judgement, zones, (n, spread), shares, found)),
         handbook=HandbookUsed(
             key=handbook.key, title=handbook.title, year=handbook.year, sha256=handbook.sha256
         ),
@@ -107,7 +93,7 @@ def _refuse_impossible(judgement: Judgement, where: str) -> None:
         )
 
 
-def _zones(handbook: Handbook, judgement: Judgement, where: str) -> list[_Zone]:
+def _zones(handbook: Handbook, judgement: Judgement, where: str) -> list[Zone]:
     if (judgement.factors is None) == (judgement.segments is None):
         raise InputError(
             "either factors or segments must be there, not both or none",
@@ -116,11 +102,11 @@ def _zones(handbook: Handbook, judgement: Judgement, where: str) -> list[_Zone]:
         )
     if judgement.factors is not None:
         resolved = resolve(handbook, judgement.setting, judgement.factors, f"{where}: factors")
-        return [_Zone(name=None, percent=100.0, resolved=resolved)]
+        return [Zone(name=None, percent=100.0, resolved=resolved)]
     return _segment_zones(handbook, judgement, where)
 
 
-def _segment_zones(handbook: Handbook, judgement: Judgement, where: str) -> list[_Zone]:
+def _segment_zones(handbook: Handbook, judgement: Judgement, where: str) -> list[Zone]:
     segments = judgement.segments or ()
     names = [segment.name.strip().casefold() for segment in segments]
     if len(segments) < 2 or len(set(names)) < len(names) or not all(names):
@@ -135,7 +121,7 @@ def _segment_zones(handbook: Handbook, judgement: Judgement, where: str) -> list
             wanted="shares above 0 that add to 100",
         )
     return [
-        _Zone(
+        Zone(
             name=segment.name,
             percent=segment.perimeter_percent,
             resolved=resolve(
@@ -149,7 +135,7 @@ def _segment_zones(handbook: Handbook, judgement: Judgement, where: str) -> list
     ]
 
 
-def _envelope(zones: Sequence[_Zone]) -> Range:
+def _envelope(zones: Sequence[Zone]) -> Range:
     if len(zones) == 1:
         return additive.envelope(zones[0].ranges)
     return additive.envelope_of_segments(
@@ -158,7 +144,7 @@ def _envelope(zones: Sequence[_Zone]) -> Range:
 
 
 def _spread_and_shares(
-    zones: Sequence[_Zone], judgement: Judgement
+    zones: Sequence[Zone], judgement: Judgement
 ) -> tuple[Spread, list[list[float]]]:
     columns = [zone.columns for zone in zones]
     if len(zones) == 1:
@@ -176,7 +162,7 @@ def _spread_and_shares(
 
 
 def _factor_estimate(
-    handbook: Handbook, zone: _Zone, factor: Factor, share: float
+    handbook: Handbook, zone: Zone, factor: Factor, share: float
 ) -> FactorEstimate:
     entry = zone.resolved[factor]
     published = entry.published
@@ -190,42 +176,33 @@ def _factor_estimate(
         published=Limits(low=published.low, high=published.high) if published else None,
         share_of_variance=share,
         basis="measured" if entry.measured else "grade",
-        source=_source(entry),
+        source=entry.source,
         note=shown_note(entry.choice),
         segment=zone.name,
     )
 
 
-def _source(entry: Resolved) -> str:
-    if entry.grade is not None:
-        return entry.grade.source
-    if entry.grade_key is not None:
-        return "a flood plain has none"
-    return "own value, no table"
-
-
 def _findings(
-    handbook: Handbook, judgement: Judgement, zones: Sequence[_Zone]
+    handbook: Handbook, judgement: Judgement, zones: Sequence[Zone], n: Range
 ) -> tuple[Finding, ...]:
-    found: list[Finding] = []
-    for zone in zones:
-        n = additive.envelope(zone.ranges)
+    def found(resolved: Mapping[Factor, Resolved], of: Range, segment: str | None) -> list[Finding]:
         facts = facts_of(
-            handbook, judgement.handbook, judgement.setting, zone.resolved, judgement.measured, n
+            handbook,
+            judgement.handbook,
+            judgement.setting,
+            resolved,
+            judgement.measured,
+            of,
+            segment,
         )
-        rows = findings.find(facts)[0]
-        found += [_told_of(zone, finding) for finding in rows]
-    return tuple(dict.fromkeys(found))
+        return findings.find(facts)[0]
+
+    each = [f for z in zones for f in found(z.resolved, additive.envelope(z.ranges), z.name)]
+    whole = found({}, n, None) if len(zones) > 1 else []
+    return tuple(sorted(dict.fromkeys(each + whole), key=lambda f: LEVELS.index(f.level)))
 
 
-def _told_of(zone: _Zone, finding: Finding) -> Finding:
-    """Name the segment that a finding about one of its factors speaks of."""
-    if zone.name is None or finding.factor is None:
-        return finding
-    return replace(finding, says=f"{zone.name}: {finding.says}")
-
-
-def _segment_estimates(zones: Sequence[_Zone]) -> tuple[SegmentEstimate, ...] | None:
+def _segment_estimates(zones: Sequence[Zone]) -> tuple[SegmentEstimate, ...] | None:
     if len(zones) == 1:
         return None
     return tuple(
@@ -238,7 +215,7 @@ def _segment_estimates(zones: Sequence[_Zone]) -> tuple[SegmentEstimate, ...] | 
     )
 
 
-def _composite(zones: Sequence[_Zone]) -> dict[str, float] | None:
+def _composite(zones: Sequence[Zone]) -> dict[str, float] | None:
     if len(zones) == 1:
         return None
     n = np.array([additive.envelope(zone.ranges).best for zone in zones])

@@ -6,8 +6,8 @@ from typing import Any
 import numpy as np
 
 from roughness.assessment.resolving import Resolved, criterion_numbers, noted
-from roughness.findings import FactorFacts, Facts
-from roughness.handbook import Handbook, gap_around
+from roughness.findings import FactorFacts, Facts, nothing_chosen
+from roughness.handbook import Candidates, Handbook, candidates, gap_around
 from roughness.quantities.ranges import Range
 from roughness.survey.choices import CHOICES, Measured
 from roughness.survey.words import Factor, Setting
@@ -20,18 +20,25 @@ def facts_of(
     resolved: Mapping[Factor, Resolved],
     measured: Measured,
     n: Range,
+    segment: str | None = None,
 ) -> Facts:
-    """Return one row of facts (N = 1) for one part, or one segment of it."""
+    """Return one row of facts (N = 1) for one part, or one segment of it.
+
+    ``resolved`` is empty for a part as a whole whose segments have rows of their own.
+    """
+    factors = {
+        factor: _factor_facts(handbook, setting, entry, measured)
+        for factor, entry in resolved.items()
+    }
     return Facts(
+        segment=_word(segment),
         setting=_word(setting),
         asked_handbook=_word(asked_handbook),
         handbook=_word(handbook.key),
         n_low=_number(n.low),
         n_best=_number(n.best),
         n_high=_number(n.high),
-        factors={
-            factor: _factor_facts(handbook, setting, entry) for factor, entry in resolved.items()
-        },
+        factors=factors or nothing_chosen(1),
         d50_mm=_number(measured.d50_mm),
         d84_mm=_number(measured.d84_mm),
         slope=_number(measured.slope),
@@ -43,11 +50,18 @@ def facts_of(
     )
 
 
-def _factor_facts(handbook: Handbook, setting: Setting, entry: Resolved) -> FactorFacts:
-    grade, published, left = entry.grade, entry.published, entry.candidates
+def _factor_facts(
+    handbook: Handbook, setting: Setting, entry: Resolved, measured: Measured
+) -> FactorFacts:
+    grade, published = entry.grade, entry.published
+    left = entry.candidates
+    if not left.grades and grade is not None:
+        left = _from_measured(handbook, setting, entry, measured)
     gap = gap_around(handbook, setting, entry.factor, entry.range.best) if grade else None
     criteria = criterion_numbers(entry.choice)
     names = [name for name in CHOICES[entry.factor].__dataclass_fields__ if name in _KINDS]
+    ranks = [handbook.rank(setting, entry.factor, key) for key in left.grades]
+    kinds = {m.plants for m in grade.measured if m.plants} if grade else set()
     return FactorFacts(
         grade=_word(entry.grade_key),
         rank=_number(handbook.rank(setting, entry.factor, grade.key) if grade else None),
@@ -61,18 +75,29 @@ def _factor_facts(handbook: Handbook, setting: Setting, entry: Resolved) -> Fact
         lower_bound=np.array([bool(grade and grade.lower_bound)]),
         measured_says=_word(left.says),
         candidates=_word(" ".join(left.grades)),
-        candidates_rank=_number(
-            max((handbook.rank(setting, entry.factor, key) for key in left.grades), default=None)
-        ),
+        candidates_rank=_number(max(ranks, default=None)),
         near=_word(" ".join(left.near)),
         gap_low=_number(gap[0] if gap else None),
         gap_high=_number(gap[1] if gap else None),
-        kinds=_word(
-            " ".join(sorted({m.plants for m in grade.measured if m.plants})) if grade else ""
-        ),
+        kinds=_word(" ".join(sorted(kinds))),
         numbers={n: _number(criteria.get(n)) for n in names if _KINDS[n] is float},
         words={n: _word(_yes_or_no(criteria.get(n))) for n in names if _KINDS[n] is str},
     )
+
+
+def _from_measured(
+    handbook: Handbook, setting: Setting, entry: Resolved, measured: Measured
+) -> Candidates:
+    """Return what the measurements of the part say of a factor that has none of its own."""
+    known = entry.choice.criteria()
+    if entry.factor == "base":
+        filled = {"d50_mm": measured.d50_mm}
+    elif entry.factor == "vegetation" and "plants" in known:
+        filled = {"depth_m": measured.depth_m, "vegetation_height_m": measured.vegetation_height_m}
+    else:
+        return entry.candidates
+    criteria = {name: value for name, value in (filled | known).items() if value is not None}
+    return candidates(handbook, setting, entry.factor, criteria)
 
 
 _KINDS: dict[str, type] = {

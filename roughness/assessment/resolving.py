@@ -44,6 +44,13 @@ class Resolved:
         """Key of the grade; ``not-applicable`` where a flood plain has no such factor."""
         return self.grade.key if self.grade else self.choice.grade
 
+    @property
+    def source(self) -> str:
+        """Table and page, or that there is none."""
+        if self.grade is not None:
+            return self.grade.source
+        return "a flood plain has none" if self.choice.grade else "own value, no table"
+
 
 def resolve(
     handbook: Handbook, setting: Setting, factors: Factors, where: str

@@ -1,12 +1,15 @@
 """How numbers are printed for people; the only place that prints n."""
 
 from collections.abc import Sequence
-from decimal import ROUND_HALF_UP, Decimal
+from decimal import ROUND_HALF_UP, Context, Decimal
+from math import isfinite
 from typing import Protocol
 
 # A float sum such as 0.0155 + 0.02 carries noise in its 17th digit; rounding starts from
 # the decimal value that twelve significant digits hold.
 _SIGNIFICANT = 12
+# Wide enough for any float, so that an absurd number is printed and not an error.
+_WIDE = Context(prec=700, rounding=ROUND_HALF_UP)
 
 
 class _HasLimits(Protocol):
@@ -22,7 +25,9 @@ def _decimal(value: float) -> Decimal:
 
 def rounded(value: float, places: int) -> str:
     """Print ``value`` with ``places`` decimals, halves away from zero on the decimal value."""
-    return str(_decimal(value).quantize(Decimal(1).scaleb(-places), rounding=ROUND_HALF_UP))
+    if not isfinite(value):
+        return str(value)
+    return str(_decimal(value).quantize(Decimal(1).scaleb(-places), context=_WIDE))
 
 
 def show_n(n: float) -> str:
