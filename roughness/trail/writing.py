@@ -7,8 +7,8 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from roughness.errors import BrokenTrailError, InputError, NotKeptError, RecordError
-from roughness.quantities.foreign_text import printable
+from roughness.errors import BrokenTrailError, NotKeptError, RecordError
+from roughness.quantities.foreign_text import checked_name, printable
 from roughness.trail.lines import Line, encoded, hash_of
 from roughness.trail.locking import SurveyLock
 from roughness.trail.naming import shown
@@ -134,9 +134,7 @@ def _kept(
     at: str,
     locked: bool,
 ) -> Kept:
-    if not by.strip():
-        raise InputError("nobody is named as the author", wanted="give a name with --by")
-    raw = encoded(trail.heads, at, by.strip(), *said)
+    raw = encoded(trail.heads, at, checked_name(by, "name of the author"), *said)
     if trail.torn:
         _save_torn(path, trail, at)
     _write(path, raw + b"\n", trail.size, is_new=not path.exists())

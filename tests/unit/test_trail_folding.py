@@ -178,6 +178,15 @@ def test_an_estimate_can_tell_bed_and_banks_apart(writing: Writing) -> None:
     assert [s.name for s in writing.place.segments or ()] == ["bed", "banks"]
 
 
+def test_an_estimate_of_the_whole_part_ends_the_telling_apart(writing: Writing) -> None:
+    writing.gate(segments=[{"name": "bed", "perimeter_percent": 60}])
+    writing.choose("base", {"grade": "sand"}, segment="bed")
+    estimate = {"handbook": "ours", "setting": "channel", "factors": {"base": {"grade": "soil"}}}
+    writing.say("estimate", PLACE | {"handbook_sha256": SHA, "estimate": estimate})
+    assert writing.place.segments is None
+    assert list(writing.place.choices) == [None]
+
+
 def test_the_gate_names_segments_and_choices_of_dropped_ones_are_ignored(
     writing: Writing,
 ) -> None:
@@ -343,3 +352,26 @@ def test_every_line_can_be_told_in_a_sentence(writing: Writing) -> None:
     assert told(writing.raws) == "a choose line whose data does not fit its kind"
     writing.say("weather", {"rain": 3})
     assert told(writing.raws).startswith("a line of a kind that this version does not know")
+
+
+def test_an_estimate_and_a_carried_choice_are_told_with_what_they_set(writing: Writing) -> None:
+    base = {"base": {"grade": "gravel"}, "meander": {"sinuosity": 1.2}}
+    whole = {"handbook": "ours", "setting": "channel", "factors": base}
+    segment = {"name": "bed", "perimeter_percent": 60, "factors": base}
+    apart = {"handbook": "ours", "setting": "channel", "segments": [segment]}
+    for estimate in (whole, apart):
+        writing.say("estimate", PLACE | {"handbook_sha256": SHA, "estimate": estimate})
+    writing.choose("meander", {"sinuosity": 1.2}, carried_from=PLACE | {"reach": "ford\u202e"})
+    assert [describe_line(line) for line in writing.state.effective[1:]] == [
+        "estimate of main channel at design flood: base gravel, meander by measure",
+        "estimate of main channel at design flood: bed told apart",
+        "meander of main channel at design flood: sinuosity 1.2, carried from ford\\u202e",
+    ]
+
+
+def test_the_choices_of_a_part_can_be_handed_on_as_factors(writing: Writing) -> None:
+    writing.choose("meander", {"sinuosity": 1.2})
+    factors = writing.place.factors()
+    assert factors.meander == MeanderChoice(sinuosity=1.2)
+    assert factors.base is None
+    assert writing.place.factors("bed").meander is None

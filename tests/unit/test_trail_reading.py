@@ -148,7 +148,9 @@ def test_what_is_no_line_is_broken_and_named(line: bytes, why: str) -> None:
 def test_a_value_of_the_wrong_type_is_broken(key: str, value: Any) -> None:
     raws = visits(1)
     said = json.loads(raws[1]) | {key: value}
-    assert places(read([*raws, json.dumps(said).encode()])) == [3]
+    trail = read([*raws, json.dumps(said).encode()])
+    assert places(trail) == [3]
+    assert f"'{key}'" in trail.broken[0].what
 
 
 def test_two_heads_are_to_be_merged_and_not_broken() -> None:

@@ -189,9 +189,10 @@ def test_a_line_needs_a_moment_with_its_offset(trail: Path, lock: SurveyLock, at
         append(trail, "visit", {"visit": "x"}, by="Ann", at=at, lock=lock)
 
 
-def test_a_line_needs_an_author(trail: Path, lock: SurveyLock) -> None:
-    with pytest.raises(InputError, match="author"):
-        append(trail, "visit", {"visit": "x"}, by="  ", at=AT, lock=lock)
+@pytest.mark.parametrize("by", ["  ", "x" * 121, "Ann\u202e", "Ann\nBo"])
+def test_a_line_needs_an_author_with_a_name(trail: Path, lock: SurveyLock, by: str) -> None:
+    with pytest.raises(InputError, match="name of the author"):
+        append(trail, "visit", {"visit": "x"}, by=by, at=AT, lock=lock)
 
 
 def test_a_missing_folder_keeps_nothing_and_says_so(tmp_path: Path, lock: SurveyLock) -> None:
