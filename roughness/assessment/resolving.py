@@ -199,14 +199,12 @@ def _range(factor: Factor, choice: Choice, published: Range | None, where: str) 
     if published is None:
         values = list(given.values())
         published = Range(min(values), (min(values) + max(values)) / 2, max(values))
-    typical = _typical(choice, published)
-    best = given.get(
-        "best", min(max(typical, given.get("low", typical)), given.get("high", typical))
-    )
+    within = max(_typical(choice, published), given.get("low", 0.0))
+    best = given.get("best", min(within, given.get("high", within)))
     return Range(
-        given.get("low", min(published.low, best)),
-        best,
-        given.get("high", max(published.high, best)),
+        low=given.get("low", min(published.low, best)),
+        best=best,
+        high=given.get("high", max(published.high, best)),
     )
 
 
