@@ -7,8 +7,9 @@ from numpy.typing import ArrayLike
 
 from roughness.additive.combining import combine
 from roughness.additive.factor_shapes import FactorShape, Floats, factor_columns
+from roughness.additive.quadrature import gauss_legendre
 
-_NODES, _WEIGHTS = np.polynomial.legendre.leggauss(12)
+_NODES_A_PANEL = 12
 Moments = tuple[Floats, Floats]
 
 
@@ -57,13 +58,14 @@ def _together_moments(factors: Sequence[FactorShape]) -> Moments:
 
 def panelled_angles(factors: Sequence[FactorShape]) -> Moments:
     """Return angles and weights that integrate over p = sin(angle)^2, split at the modes."""
+    nodes, weights = gauss_legendre(_NODES_A_PANEL)
     turns = [factor.turn for factor in factors]
     first = np.zeros_like(turns[0])
     edges = np.sort(np.stack([first, *turns, first + np.pi / 2], axis=-1), axis=-1)
     half = np.diff(edges, axis=-1)[..., None] / 2
-    angle = edges[..., :-1, None] + half * (1 + _NODES)
-    weight = half * _WEIGHTS * np.sin(2 * angle)
-    flat = (*first.shape, (len(turns) + 1) * len(_NODES))
+    angle = edges[..., :-1, None] + half * (1 + nodes)
+    weight = half * weights * np.sin(2 * angle)
+    flat = (*first.shape, (len(turns) + 1) * _NODES_A_PANEL)
     return angle.reshape(flat), weight.reshape(flat)
 
 

@@ -12,6 +12,7 @@ from numpy.typing import ArrayLike
 
 from roughness.additive.combining import combine
 from roughness.additive.factor_shapes import Floats, factor_columns
+from roughness.additive.quadrature import gauss_legendre
 from roughness.additive.spreads import (
     PERCENTILES,
     USUAL_DEPENDENCE,
@@ -23,7 +24,7 @@ from roughness.hydraulics.composite import horton_einstein, weights
 from roughness.quantities.ranges import Range
 
 Segment = tuple[ArrayLike, ArrayLike, ArrayLike]
-_NODES, _WEIGHTS = np.polynomial.legendre.leggauss(128)
+_NODES = 128
 
 
 def envelope_of_segments(segments: Sequence[Segment], perimeter: ArrayLike) -> Range:
@@ -66,8 +67,9 @@ def spread_of_segments(
         Gauss-Legendre quadrature over the quantile, 128 nodes in arcsin(sqrt(p)): against 3,000
         nodes, on 60 random parts, off by at most 3e-8 (mean) and 2e-7 (sd) relative.
     """
-    angle = np.pi / 4 * (1 + _NODES)
-    weight = np.pi / 4 * _WEIGHTS * np.sin(2 * angle)
+    nodes, of_nodes = gauss_legendre(_NODES)
+    angle = np.pi / 4 * (1 + nodes)
+    weight = np.pi / 4 * of_nodes * np.sin(2 * angle)
     p = np.concatenate([PERCENTILES, np.sin(angle) ** 2])
     rows = [quantiles(*s, p, shape=shape, dependence=dependence) for s in segments]
     of_part = horton_einstein(np.stack(rows, axis=-1), perimeter)

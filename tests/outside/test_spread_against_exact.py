@@ -180,6 +180,17 @@ HARD: dict[str, list[Factor]] = {
         *[POINT] * 4,
         (1.15, 1.15, 1.1501, "triangular"),
     ],
+    "mode at the upper end under a multiplier on the border of narrow": [
+        (0.0, 0.1572, 0.1572, "triangular"),
+        (0.0, 0.0, 0.00026, "uniform"),
+        *[POINT] * 3,
+        (1.0, 1.0, 1.4, "triangular"),
+    ],
+    "uniform under a multiplier a little narrower": [
+        (0.02, 0.2, 0.2, "uniform"),
+        *[POINT] * 4,
+        (1.0, 1.0, 1.3, "uniform"),
+    ],
     "sum that begins at zero": [
         (0.0, 0.0, 0.03, "triangular"),
         (0.0, 0.01, 0.02, "uniform"),
