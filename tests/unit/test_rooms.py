@@ -30,7 +30,15 @@ FLOORS: tuple[tuple[str, ...], ...] = (
     ("errors",),
 )
 LEVEL = {room: level for level, floor in enumerate(FLOORS) for room in floor}
-PURE = ("assessment", "reasoning", "findings", "comparison", "additive", "handbook", "hydraulics")
+PURE: tuple[str, ...] = (
+    "assessment",
+    "reasoning",
+    "findings",
+    "comparison",
+    "additive",
+    "handbook",
+    "hydraulics",
+)
 PURE += ("survey", "quantities", "errors")
 IMPURE = {"os", "io", "pathlib", "time", "datetime", "random", "subprocess", "socket", "tempfile"}
 FILES = sorted(PACKAGE.rglob("*.py"))
