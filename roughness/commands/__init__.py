@@ -8,6 +8,7 @@ import argparse
 import os
 import sys
 from collections.abc import Sequence
+from contextlib import suppress
 from dataclasses import dataclass
 from importlib import import_module
 from pathlib import Path
@@ -68,13 +69,16 @@ class Verb(Protocol):
 
 class _Parser(argparse.ArgumentParser):
     def error(self, message: str) -> NoReturn:
-        complain(f"{self.prog}: {message}; see `{self.prog} --help`")
+        complain(f"{message}; see `{self.prog} --help`")
         raise SystemExit(WRONG_INPUT)
 
 
 def complain(sentence: str) -> None:
     """Say on standard error what is wrong; standard output is for results alone."""
-    print(f"roughness: {sentence}" if ":" not in sentence[:10] else sentence, file=sys.stderr)
+    from roughness.quantities.foreign_text import printable
+
+    shown = "\n".join(map(printable, sentence.split("\n")))
+    print(f"roughness: {shown}", file=sys.stderr)
 
 
 def run(words: Sequence[str]) -> int | Screens:
@@ -85,8 +89,7 @@ def run(words: Sequence[str]) -> int | Screens:
         complain(str(error))
         return WRONG_INPUT
     except OSError as error:
-        complain(_about_file(error))
-        return WRONG_INPUT
+        return _not_delivered(error)
     except KeyboardInterrupt:
         complain("stopped")
         return WRONG_INPUT
@@ -138,6 +141,24 @@ def help_page() -> str:
     """Return what ``roughness --help`` prints: one page."""
     width = max(map(len, VERBS))
     return _USAGE.format(verbs="\n".join(f"  {v:<{width}}  {line}" for v, line in VERBS.items()))
+
+
+def _not_delivered(error: OSError) -> int:
+    """Say which file could not be used; a reader that had enough of the output is no fault."""
+    had_enough = isinstance(error, BrokenPipeError)
+    if error.filename is None:
+        _let_go_of_output()
+    if not had_enough:
+        complain(_about_file(error))
+    return DONE if had_enough else WRONG_INPUT
+
+
+def _let_go_of_output() -> None:
+    """Send what is left in the buffer nowhere, so that leaving does not fail on it again."""
+    with suppress(OSError, ValueError):
+        nowhere = os.open(os.devnull, os.O_WRONLY)
+        os.dup2(nowhere, sys.stdout.fileno())
+        os.close(nowhere)
 
 
 def _about_file(error: OSError) -> str:

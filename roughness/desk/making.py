@@ -2,7 +2,8 @@
 
 import secrets
 import shutil
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 from pathlib import Path
 
 from roughness.desk.folder import USUAL_HANDBOOK, SurveyFolder
@@ -36,23 +37,16 @@ def new_survey(
     InputError
         Where the folder holds something, a name does not fit or the handbook is not known.
     NotKeptError
-        Where the disk did not take it; what was made is taken away again.
+        Where the disk did not take it.
+
+    Whatever goes wrong, what was made until then is taken away again.
     """
     load_handbook(handbook)
-    name = checked_name(name or folder.resolve().name, "name of the survey")
-    _refuse_full(folder)
-    made_here = not folder.exists()
-    try:
-        folder.mkdir(parents=True, exist_ok=True)
+    name = checked_name(folder.resolve().name if name is None else name, "name of the survey")
+    if stream is not None:
+        stream = checked_name(stream, "name of the stream")
+    with _whole_or_nothing(folder):
         return _filled(folder, by, name, stream, handbook, reaches)
-    except (OSError, NotKeptError) as error:
-        if made_here:
-            shutil.rmtree(folder, ignore_errors=True)
-        if isinstance(error, NotKeptError):
-            raise
-        raise NotKeptError(
-            f"{printable(str(folder))}: {error.strerror}; nothing was made"
-        ) from None
 
 
 def _filled(
@@ -84,9 +78,37 @@ def copy_demo(folder: Path) -> SurveyFolder:
     InputError
         Where the folder holds something.
     """
+    with _whole_or_nothing(folder):
+        shutil.copytree(demo_folder(), folder, dirs_exist_ok=True)
+        return SurveyFolder(folder)
+
+
+@contextmanager
+def _whole_or_nothing(folder: Path) -> Iterator[None]:
+    """Make ``folder`` where it is not there; whatever goes wrong, leave what was there before."""
     _refuse_full(folder)
-    shutil.copytree(demo_folder(), folder, dirs_exist_ok=True)
-    return SurveyFolder(folder)
+    made_here = [path for path in (folder, *folder.parents) if not path.exists()]
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        yield
+    except BaseException as error:
+        if made_here:
+            shutil.rmtree(made_here[-1], ignore_errors=True)
+        else:
+            _empty(folder)
+        if isinstance(error, OSError):
+            raise NotKeptError(
+                f"{printable(str(folder))}: {error.strerror}; nothing was made"
+            ) from None
+        raise
+
+
+def _empty(folder: Path) -> None:
+    for inside in folder.iterdir():
+        if inside.is_dir():
+            shutil.rmtree(inside, ignore_errors=True)
+        else:
+            inside.unlink(missing_ok=True)
 
 
 def _refuse_full(folder: Path) -> None:

@@ -3,15 +3,16 @@
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, replace
 
-from roughness.assessment.estimate import Estimate
+from roughness.assessment.estimate import Estimate, FactorEstimate
 from roughness.desk.folder import SurveyFolder
-from roughness.desk.places import Place, place_in
+from roughness.desk.places import Place, Question, place_in
 from roughness.errors import RoughnessError
 from roughness.findings import Estimated, Finding, find_over_survey
 from roughness.quantities.foreign_text import same_name_key
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.survey.words import FACTORS, Factor
-from roughness.trail.state import Adopted, ReachState
+from roughness.trail.lines import Line
+from roughness.trail.state import Adopted, PartState, ReachState
 
 # A survey of thousands of reaches has one sentence more where a rule is met by most of them.
 UNVISITED, INCOMPLETE, ESTIMATED = "unvisited", "incomplete", "estimated"
@@ -47,6 +48,18 @@ class Row:
         if self.adopted is not None:
             return self.adopted.n
         return self.estimate.n.best if self.estimate else None
+
+    def entry(self, question: Question) -> FactorEstimate | None:
+        """Return what the estimate says of a question; of the whole part, any segment's word."""
+        segment, factor = question
+        return next(
+            (
+                entry
+                for entry in (self.estimate.factors if self.estimate else ())
+                if entry.factor == factor and segment in (None, entry.segment)
+            ),
+            None,
+        )
 
     @property
     def stands_stopped(self) -> bool:
@@ -137,6 +150,7 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
             findings=(finding,),
         )
     touched = place.state is not None
+    said = _last_judged(place.state) if place.state else None
     visit = _visit(state, place)
     return replace(
         bare,
@@ -147,9 +161,16 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
         status=ESTIMATED if estimate else INCOMPLETE if touched or visit else UNVISITED,
         findings=estimate.findings if estimate else (),
         visit=visit,
-        estimated_by=place.state.last_by if place.state else None,
-        estimated_at=place.state.last_at if place.state else None,
+        estimated_by=said.by if said else None,
+        estimated_at=said.at if said else None,
     )
+
+
+def _last_judged(state: PartState) -> Line | None:
+    """Return the last line that the estimate rests on; adopting a value is none."""
+    lines = [chosen.line for by_factor in state.choices.values() for chosen in by_factor.values()]
+    lines += [state.gate_line] if state.gate_line else []
+    return max(lines, key=lambda line: line.number, default=None)
 
 
 def _visit(state: ReachState, place: Place) -> Visit | None:

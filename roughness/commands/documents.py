@@ -1,0 +1,89 @@
+"""The JSON documents that commands print, as dataclasses; their schema is published."""
+
+from dataclasses import dataclass
+
+from roughness.desk.checking import Checked
+from roughness.desk.rows import Row
+from roughness.findings import Finding, Level
+from roughness.quantities.ranges import Range
+from roughness.survey.words import Factor
+
+
+@dataclass(frozen=True, kw_only=True)
+class Listed:
+    """One part of one reach under one flow condition."""
+
+    reach: str
+    part: str | None
+    """Null where the reach has no part yet."""
+    condition: str | None
+    n: Range | None
+    """Null while a factor is missing."""
+    status: str
+    open_findings: tuple[Finding, ...]
+
+
+@dataclass(frozen=True, kw_only=True)
+class Broken:
+    """Something that does not hang together; line 0 where the whole file is meant."""
+
+    file: str
+    line: int
+    what: str
+
+
+@dataclass(frozen=True, kw_only=True)
+class PlacedFinding:
+    """A finding and what it is about."""
+
+    reach: str
+    part: str | None
+    condition: str | None
+    level: Level
+    rule: str
+    factor: Factor | None
+    says: str
+
+
+@dataclass(frozen=True, kw_only=True)
+class CheckDocument:
+    """What ``roughness check --json`` prints."""
+
+    intact: bool
+    broken: tuple[Broken, ...]
+    findings: tuple[PlacedFinding, ...]
+
+
+def listed(row: Row) -> Listed:
+    """Return a row as ``roughness list --json`` prints it."""
+    return Listed(
+        reach=row.reach.reach,
+        part=row.part.part if row.part else None,
+        condition=row.condition.condition if row.condition else None,
+        n=row.estimate.n if row.estimate else None,
+        status=row.status,
+        open_findings=row.findings,
+    )
+
+
+def check_document(checked: Checked) -> CheckDocument:
+    """Return what was checked, findings worst first."""
+    placed = [
+        PlacedFinding(
+            reach=row.reach.reach,
+            part=row.part.part if row.part else None,
+            condition=row.condition.condition if row.condition else None,
+            level=finding.level,
+            rule=finding.rule,
+            factor=finding.factor,
+            says=finding.says,
+        )
+        for row in checked.rows
+        for finding in row.findings
+    ]
+    levels = ("stop", "ask", "tell")
+    return CheckDocument(
+        intact=checked.intact,
+        broken=tuple(Broken(file=f.file, line=f.line, what=f.what) for f in checked.broken),
+        findings=tuple(sorted(placed, key=lambda one: levels.index(one.level))),
+    )

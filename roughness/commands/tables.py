@@ -1,0 +1,42 @@
+"""Handbooks and their rows."""
+
+import argparse
+from pathlib import Path
+
+from roughness.commands import DONE
+from roughness.commands.arguments import add_json
+from roughness.commands.results import print_json, print_lines
+
+
+def add_arguments(parser: argparse.ArgumentParser) -> None:
+    """Declare what the verb takes."""
+    parser.add_argument("key", nargs="?", metavar="KEY", help="print the rows of this handbook")
+    parser.add_argument(
+        "--survey", type=Path, metavar="SURVEY", help="the handbooks of this survey too"
+    )
+    add_json(parser)
+
+
+def run(args: argparse.Namespace) -> int:
+    """Print all handbooks, or every row of one."""
+    from roughness.commands import handbook_text as text
+    from roughness.shelf.handbooks import handbook_keys, load_handbook
+
+    folder = None
+    if args.survey is not None:
+        from roughness.desk.folder import SurveyFolder
+
+        folder = SurveyFolder(args.survey).handbooks
+    if args.key is not None:
+        handbook = load_handbook(args.key, folder)
+        if args.json:
+            print_json(text.handbook_document(handbook))
+        else:
+            print_lines(text.handbook_lines(handbook))
+        return DONE
+    handbooks = [load_handbook(key, folder) for key in handbook_keys(folder)]
+    if args.json:
+        print_json([text.summary(handbook, folder) for handbook in handbooks])
+    else:
+        print_lines(text.summary_lines(handbooks, folder))
+    return DONE
