@@ -78,8 +78,15 @@ class Place:
         return tuple(
             (zone, factor)
             for factor in factors_of(self.part.setting)
-            for zone in ((None,) if factor in OF_THE_WHOLE_PART else self.zones)
+            for zone in ((None,) if self._is_asked_once(factor) else self.zones)
         )
+
+    def _is_asked_once(self, factor: Factor) -> bool:
+        """Whether one answer serves all segments; a recorded estimate may tell them apart."""
+        if factor not in OF_THE_WHOLE_PART:
+            return False
+        told_apart = any(factor in self.standing.get(zone, {}) for zone in self.zones)
+        return factor in self.standing.get(None, {}) or not told_apart
 
     def at(self, segment: str | None, factor: Factor) -> Standing | None:
         """Return what stands for a factor: the segment's own choice, else the whole part's."""
