@@ -1,13 +1,13 @@
 """A survey's folder as it is read: trails, states and handbooks, read again when a file changed."""
 
 import os
-from collections.abc import Callable
 from dataclasses import dataclass, replace
+from functools import cached_property
 from pathlib import Path
 
 from roughness.errors import RecordError, UnknownNameError
 from roughness.handbook import Handbook
-from roughness.quantities.foreign_text import nearest, printable
+from roughness.quantities.foreign_text import nearest, printable, same_name_key
 from roughness.quantities.printing import enumerate_words
 from roughness.shelf.handbooks import handbook_for
 from roughness.survey.stream import Reach
@@ -25,9 +25,22 @@ _MOST_SUGGESTED = 12
 
 @dataclass(frozen=True)
 class _Seen:
+    """A file as it was read; what it says is folded when somebody asks."""
+
     stamp: tuple[int, int, int]
     trail: Trail
-    state: SurveyState | ReachState
+
+    @cached_property
+    def of_survey(self) -> SurveyState:
+        return fold_survey(self.trail)
+
+    @cached_property
+    def of_reach(self) -> ReachState:
+        return fold_reach(self.trail)
+
+    @cached_property
+    def by_name(self) -> dict[str, NotedReach]:
+        return {same_name_key(noted.reach): noted for noted in self.of_survey.reaches}
 
 
 class SurveyFolder:
@@ -68,14 +81,12 @@ class SurveyFolder:
 
     def trail(self) -> Trail:
         """Return the survey's own trail."""
-        return self._look(self.path, fold_survey).trail
+        return self._look(self.path).trail
 
     @property
     def state(self) -> SurveyState:
         """What the survey's own trail says now."""
-        state = self._look(self.path, fold_survey).state
-        assert isinstance(state, SurveyState)
-        return state
+        return self._look(self.path).of_survey
 
     def noted_reach(self, name: str) -> NotedReach:
         """Return a reach as the survey lists it.
@@ -85,7 +96,7 @@ class SurveyFolder:
         UnknownNameError
             Names the nearest reach.
         """
-        reach = self.state.reach(name)
+        reach = self._look(self.path).by_name.get(same_name_key(name))
         if reach is None:
             names = [printable(r.reach) for r in self.state.reaches]
             few = f"known are {enumerate_words(names[:_MOST_SUGGESTED])}" if names else "none yet"
@@ -102,7 +113,7 @@ class SurveyFolder:
 
     def reach_trail(self, name: str) -> Trail:
         """Return the trail of a reach."""
-        return self._look(self.reach_path(name), fold_reach).trail
+        return self._look(self.reach_path(name)).trail
 
     def reach_state(self, name: str) -> ReachState:
         """Return what the trail of a reach says now.
@@ -112,9 +123,7 @@ class SurveyFolder:
         RecordError
             Where the file is not there or cannot be read.
         """
-        state = self._look(self.reach_path(name), fold_reach).state
-        assert isinstance(state, ReachState)
-        return state
+        return self._look(self.reach_path(name)).of_reach
 
     def reach(self, name: str) -> Reach:
         """Return a reach with its distances and slope: its own trail's word, else the survey's."""
@@ -141,16 +150,14 @@ class SurveyFolder:
 
     def kept(self, path: Path, trail: Trail) -> None:
         """Take over a trail that was just written, so that it is not read once more."""
-        fold: Callable[[Trail], SurveyState | ReachState]
-        fold = fold_survey if path == self.path else fold_reach
-        self._seen[path] = _Seen(_stamp(path), trail, fold(trail))
+        self._seen[path] = _Seen(_stamp(path), trail)
 
-    def _look(self, path: Path, fold: Callable[[Trail], SurveyState | ReachState]) -> _Seen:
+    def _look(self, path: Path) -> _Seen:
         seen = self._seen.get(path)
         stamp = _stamp(path)
         if seen is None or seen.stamp != stamp:
-            trail = read_trail(path, seen.trail if seen else None)
-            seen = self._seen[path] = _Seen(stamp, trail, fold(trail))
+            seen = _Seen(stamp, read_trail(path, seen.trail if seen else None))
+            self._seen[path] = seen
         return seen
 
 

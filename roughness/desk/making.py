@@ -65,8 +65,7 @@ def _filled(
     survey = SurveyFolder(folder)
     pen = Recorder(survey, by)
     pen.describe(**({"stream": stream} if stream else {}), handbook=handbook)
-    for reach in reaches:
-        pen.add_reach(reach)
+    pen.add_reaches(reaches)
     return survey
 
 

@@ -1,6 +1,6 @@
 """Everything that is written to a survey: one line at a time, checked before it is kept."""
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import asdict, dataclass
 from datetime import date, datetime
 from pathlib import Path
@@ -84,16 +84,28 @@ class Recorder:
 
     def add_reach(self, reach: Reach) -> Line:
         """Begin a reach's trail and note it in the survey's."""
+        return self.add_reaches([reach])[0]
+
+    def add_reaches(self, reaches: Sequence[Reach]) -> list[Line]:
+        """Begin the trails of several reaches; two lines each, checked before the first."""
+        state = self.survey.state
+        known = {same_name_key(noted.reach): noted.reach for noted in state.reaches}
+        for reach in reaches:
+            key = same_name_key(checked_name(reach.reach, "reach name"))
+            if key in known:
+                raise InputError(
+                    f"the survey has the reach {printable(known[key])!r} already",
+                    wanted="give another name",
+                )
+            known[key] = reach.reach
+        return [self._add_reach(reach, state.survey) for reach in reaches]
+
+    def _add_reach(self, reach: Reach, survey_id: str) -> Line:
         name = checked_name(reach.reach, "reach name")
-        if known := self.survey.state.reach(name):
-            raise InputError(
-                f"the survey has the reach {printable(known.reach)!r} already",
-                wanted="give another name",
-            )
         file = file_name_for(name)
         path = reach_trail(self.survey.folder, file)
         path.parent.mkdir(exist_ok=True)
-        first = {"format": 1, "survey": self.survey.state.survey, "reach": name}
+        first = {"format": 1, "survey": survey_id, "reach": name}
         begun = begin(path, first, by=self.by, at=now(), lock=self.survey.lock)
         self._took(path, begun)
         noted = said(reach) | {"reach": name, "file": file, "first_line": begun.line.hash}
