@@ -32,7 +32,7 @@ def account_of(
     return Account(
         setting=judgement.setting,
         handbook=handbook.title,
-        citation=f"{handbook.authors.rstrip('.')}, {handbook.year}",
+        citation=f"{handbook.authors}, {handbook.year}",
         asked_handbook=judgement.handbook if handed_over else None,
         zones=tuple(_zone(handbook, z, row) for z, row in zip(zones, shares, strict=True)),
         n=n,

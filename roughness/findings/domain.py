@@ -37,6 +37,11 @@ def _submerged_less_than(facts: Facts, grains: float) -> Flags:
     return less
 
 
+def _natural_channel(facts: Facts) -> Flags:
+    """Steep streams were measured; concrete and flood plains have no such drops and pools."""
+    return facts.in_channel & ~facts.lined & facts.whole_part
+
+
 def _tables_alone(facts: Facts) -> Flags:
     base = facts.factors["base"]
     return ~np.isnan(base.best) & ~(base.own_best & base.noted)
@@ -67,8 +72,9 @@ def hydraulic_radius_beyond_method(facts: Facts) -> Case:
 )
 def slope_little_tested(facts: Facts) -> Case:
     """Tell, up to where the slope is steep enough to ask."""
+    steep = (facts.slope >= LITTLE_TESTED_SLOPE) & (facts.slope < STEEP_SLOPE)
     return Case(
-        (facts.slope >= LITTLE_TESTED_SLOPE) & (facts.slope < STEEP_SLOPE) & facts.whole_part,
+        steep & _natural_channel(facts),
         lambda row: (
             f"On a slope of {show_value(facts.slope[row])} the tables are little tested, and n "
             "tends to be higher; compare with measured steep streams."
@@ -85,7 +91,7 @@ def slope_little_tested(facts: Facts) -> Case:
 def slope_steep(facts: Facts) -> Case:
     """Ask, since drops and pools, not surfaces, hold such flow back."""
     return Case(
-        (facts.slope >= STEEP_SLOPE) & facts.whole_part,
+        (facts.slope >= STEEP_SLOPE) & _natural_channel(facts),
         lambda row: (
             f"The slope {show_value(facts.slope[row])} is steep and the tables are hardly tested "
             "there; say in a note which measured steep streams this n was compared with."

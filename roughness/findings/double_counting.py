@@ -161,11 +161,12 @@ def smoothest_base_in_nature(facts: Facts) -> Case:
     about="irregularity",
 )
 def average_base_with_irregularity(facts: Facts) -> Case:
-    """Concrete is as even as it was built."""
+    """Concrete is as even as it was built; no plain was measured for the average."""
     base = facts.factors["base"]
-    average = (base.grade != "") & (base.grade != "concrete") & ~base.lower_bound
+    average = (base.grade != "") & ~facts.lined & ~base.lower_bound
     return Case(
         (facts.handbook == AVERAGE_BASE_FROM)
+        & facts.in_channel
         & average
         & _adds(facts, "irregularity", MODERATE_IRREGULARITY),
         lambda row: (

@@ -115,6 +115,13 @@ class Facts:
         return rows
 
     @property
+    def lined(self) -> Flags:
+        """Whether the row's part is lined with concrete."""
+        grade = self.factors["base"].grade
+        rows: Flags = (grade == "concrete") | (grade == "concrete-smooth")
+        return rows
+
+    @property
     def whole_part(self) -> Flags:
         """Whether the row stands for a whole part and not for its bed or banks."""
         rows: Flags = self.segment == ""

@@ -132,7 +132,7 @@ def jump_between_neighbours(rows: Sequence[Estimated]) -> Iterator[Said]:
                     next_one,
                     f"n jumps from {show_n(one.n.best)} in {printable(one.reach)} to "
                     f"{show_n(next_one.n.best)} in {printable(next_one.reach)}, and their spreads "
-                    "do not meet; say in a note what changes between the two reaches.",
+                    "do not meet; say in the note of either reach what changes between them.",
                 )
 
 

@@ -150,14 +150,15 @@ def range_narrow(facts: Facts) -> Case:
 @rule(
     "n-low-for-channel",
     "ask",
-    meaning="n of a channel is below 0.017, lower than natural channels are measured",
+    meaning="n of a channel is below 0.017, lower than in nature, and no noted lining says why",
     source="limit from memory; the lowest n read in Barnes 1967 (USGS WSP 1849) is 0.024",
 )
 def n_low_for_channel(facts: Facts) -> Case:
-    """Ask: a smooth lining explains it, in a natural stream it is rarely right."""
+    """Ask: a noted concrete lining explains it, in a natural stream it is rarely right."""
     low = facts.n_best < LEAST_IN_CHANNELS
+    explained = facts.lined & facts.factors["base"].noted
     return Case(
-        low & facts.in_channel & facts.whole_part,
+        low & facts.in_channel & facts.whole_part & ~explained,
         lambda row: (
             f"{_beyond(facts.n_best[row], LEAST_IN_CHANNELS, 'below')}, lower than natural "
             "channels are measured; say in a note what makes this one so smooth, a lining for one."

@@ -4,6 +4,7 @@ from typing import Final
 
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import rounded, show_value
+from roughness.quantities.ranges import Range
 from roughness.reasoning.account import Step
 from roughness.survey.words import MULTIPLIER, Factor
 
@@ -25,9 +26,9 @@ def factor_sentence(step: Step, zone: str | None = None) -> str:
     reasons = [_origin(step), _moved(step), _note(step)]
     told = "; ".join(reason for reason in reasons if reason)
     begins = f"{printable(zone)}, " if zone else ""
-    return capital(
-        f"{begins}{TITLES[step.factor]} {printable(step.symbol)} {_value(step)}{grade}: {told}."
-    )
+    named = f"{TITLES[step.factor]} {printable(step.symbol)}"
+    ends = "" if told.endswith(('."', '!"', '?"')) else "."
+    return capital(f"{begins}{named} {_value(step)}{grade}: {told}{ends}")
 
 
 def capital(sentence: str) -> str:
@@ -40,7 +41,8 @@ def shown(factor: Factor, value: float) -> str:
     if factor == MULTIPLIER or value == 0:
         return show_value(value)
     three = rounded(value, 3)
-    return three if abs(float(three) - value) < _SAME else show_value(value)
+    # A third of a range is no value that somebody typed: no more than five decimals of it.
+    return three if _close(float(three), value) else show_value(float(rounded(value, 5)))
 
 
 def _value(step: Step) -> str:
@@ -51,18 +53,25 @@ def _value(step: Step) -> str:
 
 
 def _origin(step: Step) -> str:
-    source = f" ({printable(step.source)})" if step.source else ""
     if step.grade_name is None:
         return "a value of one's own, which no table backs"
+    measured = printable(step.measured_says)
     if step.basis == "measured":
-        told = f"{printable(step.measured_says)} points to it{source}"
+        told = f"{measured} points to it{_in_brackets(step.source)}"
     else:
-        told = f"chosen{source}"
+        told = f"chosen{_in_brackets(step.source, measured and f'{measured} noted')}"
     if step.own_best:
         return f"{told}, with the best value set {_side(step)}"
-    if step.best_is_middle and step.published and _close(step.range.best, step.published.best):
-        return f"{told}, at the middle of the published range"
+    published = step.published
+    if step.best_is_middle and published and _close(step.range.best, published.best):
+        one = "at the single published value"
+        return f"{told}, {one if published.is_point else 'at the middle of the published range'}"
     return told
+
+
+def _in_brackets(*words: str) -> str:
+    told = "; ".join(printable(word) for word in words if word)
+    return f" ({told})" if told else ""
 
 
 def _side(step: Step) -> str:
@@ -74,23 +83,30 @@ def _side(step: Step) -> str:
 
 
 def _moved(step: Step) -> str:
-    """Say which published limits were left, or not made use of."""
+    """Say at which ends the published range was left, or not made use of."""
     if step.published is None:
         return ""
-    low, high = step.published.low, step.published.high
-    ends = [_end(step, "below", step.range.low, low, step.range.low < low)]
-    ends.append(_end(step, "above", step.range.high, high, step.range.high > high))
-    told = [end for end in ends if end]
-    return f"the range was {' and '.join(told)}" if told else ""
+    lower = _how(step.published.low - step.range.low)
+    upper = _how(step.range.high - step.published.high)
+    if lower == upper:
+        told = f"{lower} at both ends" if lower else ""
+    else:
+        ends = ((lower, "lower"), (upper, "upper"))
+        told = " and ".join(f"{how} at the {end} end" for how, end in ends if how)
+    return f"the {_published(step.factor, step.published)} was {told}" if told else ""
 
 
-def _end(step: Step, side: str, limit: float, published: float, widened: bool) -> str:
-    if _close(limit, published):
+def _how(beyond: float) -> str:
+    """Say what was done to a limit that now lies so far beyond the published one."""
+    if abs(beyond) < _SAME:
         return ""
-    told = shown(step.factor, published)
-    if widened:
-        return f"widened {side} the published {told}"
-    return f"narrowed from the published {told} to {shown(step.factor, limit)}"
+    return "widened" if beyond > 0 else "narrowed"
+
+
+def _published(factor: Factor, published: Range) -> str:
+    if published.is_point:
+        return f"single published {shown(factor, published.low)}"
+    return f"published {shown(factor, published.low)} to {shown(factor, published.high)}"
 
 
 def _note(step: Step) -> str:

@@ -145,4 +145,4 @@ def _open_findings(account: Account) -> str:
         told.append(f"{account.stops} {'says' if account.stops == 1 else 'say'} stop")
     if account.asks:
         told.append(f"{account.asks} {'asks' if account.asks == 1 else 'ask'} for an answer")
-    return f"Of the findings {enumerate_words(told)}."
+    return f"Of the findings, {enumerate_words(told)}."

@@ -119,6 +119,11 @@ CASES: list[tuple[str, Changes, Changes]] = [
     ("range-narrow", {"n_low": 0.043, "n_high": 0.043}, {"n_low": 0.030, "n_high": 0.043}),
     ("n-low-for-channel", {"n_best": 0.0169}, {"n_best": 0.017}),
     ("n-low-for-channel", {"n_best": 0.0169}, PLAIN | {"n_best": 0.0169}),
+    (
+        "n-low-for-channel",
+        {"n_best": 0.015, "base.grade": "concrete"},
+        {"n_best": 0.015, "base.grade": "concrete", "base.noted": True},
+    ),
     ("n-high-for-channel", {"n_best": 0.151, "n_high": 0.3}, {"n_best": 0.15, "n_high": 0.3}),
     (
         "n-high-for-channel",
@@ -204,6 +209,7 @@ CASES: list[tuple[str, Changes, Changes]] = [
     ("average-base-with-irregularity", ROUGH_BANKS, ROUGH_BANKS | {"handbook": "cowan-1956"}),
     ("average-base-with-irregularity", ROUGH_BANKS, ROUGH_BANKS | {"base.grade": "concrete"}),
     ("average-base-with-irregularity", ROUGH_BANKS, ROUGH_BANKS | SMOOTH),
+    ("average-base-with-irregularity", ROUGH_BANKS, ROUGH_BANKS | PLAIN),
     ("boulders-counted-twice", LOGS | {"base.grade": "boulder"}, LOGS | {"base.grade": "cobble"}),
     (
         "boulders-counted-twice",
@@ -272,7 +278,10 @@ CASES: list[tuple[str, Changes, Changes]] = [
     ),
     ("slope-little-tested", {"slope": 0.002}, {"slope": 0.0019}),
     ("slope-little-tested", {"slope": 0.0099}, {"slope": 0.01}),
+    ("slope-little-tested", {"slope": 0.002}, {"slope": 0.002, "base.grade": "concrete"}),
+    ("slope-little-tested", {"slope": 0.002}, PLAIN | {"slope": 0.002}),
     ("slope-steep", {"slope": 0.01}, {"slope": 0.0099}),
+    ("slope-steep", {"slope": 0.01}, {"slope": 0.01, "base.grade": "concrete"}),
     (
         "grains-stand-in-the-flow",
         {"hydraulic_radius_m": 0.119, "d84_mm": 100.0},

@@ -38,7 +38,7 @@ def test_a_jump_between_neighbours_is_asked_at_the_second_reach() -> None:
     assert (placed.reach, placed.finding.rule) == ("reach 2", "jump-between-neighbours")
     assert placed.finding.says == (
         "n jumps from 0.040 in reach 1 to 0.080 in reach 2, and their spreads do not meet; "
-        "say in a note what changes between the two reaches."
+        "say in the note of either reach what changes between them."
     )
 
 

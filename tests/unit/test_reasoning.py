@@ -76,8 +76,8 @@ def test_an_estimate_is_told_in_one_sentence_a_step() -> None:
     assert sentences(ACCOUNT) == (
         "The part is a channel; its factors come from A guide (Arcement and Schneider 1989).",
         "Base nb 0.025 (0.020 to 0.030), firm soil: chosen (table 1, p. 4), with the best value "
-        "set inside the published range; the range was widened below the published 0.025 and "
-        "narrowed from the published 0.032 to 0.030; "
+        "set inside the published range; the published 0.025 to 0.032 was widened at the lower "
+        "end and narrowed at the upper end; "
         'the note says: "smooth clay, \\u001b[31mrarely mobile".',
         "Irregularity n1 0.003 (0.001 to 0.005), minor: chosen (table 2, p. 8), "
         "at the middle of the published range.",
@@ -108,17 +108,30 @@ def told(factor: Factor, **changes: Any) -> str:
         ({"grade_name": None, "published": None}, "a value of one's own, which no table backs."),
         (
             {"range": Range(0.0, 0.004, 0.005), "own_best": True},
-            "with the best value set inside the published range; the range was widened below "
-            "the published 0.001.",
+            "with the best value set inside the published range; the published 0.001 to 0.005 "
+            "was widened at the lower end.",
         ),
         (
             {"range": Range(0.001, 0.006, 0.006), "own_best": True},
-            "with the best value set outside the published range; the range was widened above "
-            "the published 0.005.",
+            "with the best value set outside the published range; the published 0.001 to 0.005 "
+            "was widened at the upper end.",
         ),
         (
             {"range": Range(0.002, 0.003, 0.005)},
-            "the range was narrowed from the published 0.001 to 0.002.",
+            "the published 0.001 to 0.005 was narrowed at the lower end.",
+        ),
+        (
+            {"range": Range(0.002, 0.003, 0.004)},
+            "the published 0.001 to 0.005 was narrowed at both ends.",
+        ),
+        (
+            {"published": point(0.003)},
+            "at the single published value; the single published 0.003 was widened at both ends.",
+        ),
+        ({"note": "Seen from both banks."}, 'the note says: "Seen from both banks."'),
+        (
+            {"measured_says": "blocked 8 %", "best_is_middle": False},
+            "chosen (table 2, p. 8; blocked 8 % noted).",
         ),
         (
             {"published": None, "own_best": True},
@@ -130,6 +143,11 @@ def told(factor: Factor, **changes: Any) -> str:
 )
 def test_a_moved_value_or_limit_is_told(changes: dict[str, Any], wanted: str) -> None:
     assert told("irregularity", **changes).endswith(wanted)
+
+
+def test_a_value_that_nobody_typed_is_shown_with_five_decimals_at_most() -> None:
+    third = Range(0.005, 0.019 - 0.014 / 6, 0.019)
+    assert told("obstruction", range=third).startswith("Obstruction n3 0.01667 (0.005 to 0.019)")
 
 
 def test_a_flood_plain_has_four_factors_and_no_multiplier() -> None:
@@ -200,9 +218,9 @@ def test_what_people_differ_by_is_marked_where_it_was_only_remembered() -> None:
 @pytest.mark.parametrize(
     ("stops", "asks", "wanted"),
     [
-        (1, 2, "Of the findings 1 says stop and 2 ask for an answer."),
-        (2, 0, "Of the findings 2 say stop."),
-        (0, 1, "Of the findings 1 asks for an answer."),
+        (1, 2, "Of the findings, 1 says stop and 2 ask for an answer."),
+        (2, 0, "Of the findings, 2 say stop."),
+        (0, 1, "Of the findings, 1 asks for an answer."),
     ],
 )
 def test_open_findings_are_counted_at_the_end(stops: int, asks: int, wanted: str) -> None:
