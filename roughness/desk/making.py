@@ -2,6 +2,7 @@
 
 import secrets
 import shutil
+import stat
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from pathlib import Path
@@ -13,12 +14,13 @@ from roughness.quantities.foreign_text import checked_name, printable
 from roughness.shelf.handbooks import load_handbook
 from roughness.shelf.places import demo_folder
 from roughness.survey.stream import Reach
-from roughness.trail.locking import SurveyLock
+from roughness.trail.locking import LOCK_FILE, SurveyLock
 from roughness.trail.naming import survey_trail
 from roughness.trail.writing import begin
 
 # Trails are compared byte by byte; two that grew apart are united line by line.
 _GIT_ATTRIBUTES = "* -text\n*.jsonl merge=union\n"
+_FOLDERS = ("reaches", "evidence", "handbooks")
 
 
 def new_survey(
@@ -57,7 +59,7 @@ def _filled(
     handbook: str,
     reaches: Sequence[Reach],
 ) -> SurveyFolder:
-    for inside in ("reaches", "evidence", "handbooks"):
+    for inside in _FOLDERS:
         (folder / inside).mkdir()
     (folder / ".gitattributes").write_text(_GIT_ATTRIBUTES, encoding="utf-8", newline="\n")
     first = {"format": 1, "survey": secrets.token_hex(16), "name": name}
@@ -78,8 +80,25 @@ def copy_demo(folder: Path) -> SurveyFolder:
         Where the folder holds something.
     """
     with _whole_or_nothing(folder):
-        shutil.copytree(demo_folder(), folder, dirs_exist_ok=True)
+        _copy_to_write_in(demo_folder(), folder)
         return SurveyFolder(folder)
+
+
+def _copy_to_write_in(survey: Path, folder: Path) -> None:
+    """Copy the bytes alone: an installed survey may be read-only, and a lock is its owner's."""
+    shutil.copytree(
+        survey,
+        folder,
+        copy_function=shutil.copyfile,
+        ignore=shutil.ignore_patterns(LOCK_FILE),
+        dirs_exist_ok=True,
+    )
+    for inside in (folder, *folder.rglob("*")):
+        if inside.is_dir():
+            inside.chmod(inside.stat().st_mode | stat.S_IRWXU)
+    # Neither git nor a wheel keeps an empty folder.
+    for name in _FOLDERS:
+        (folder / name).mkdir(exist_ok=True)
 
 
 @contextmanager
