@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 from roughness.quantities.ranges import Range
 from roughness.survey.words import FACTORS, Factor
 
+_DECIMALS = 15
 Number = TypeVar("Number", float, NDArray[np.float64])
 
 
@@ -23,17 +24,21 @@ def combine(columns: Sequence[Number]) -> Number:
     Returns
     -------
     float or array
-        Manning's n; rounding stays below 1e-16 of a usual n.
+        Manning's n; rounded to 15 decimals.
 
     Notes
     -----
     Cowan 1956, Estimating hydraulic roughness coefficients, Agricultural Engineering 37(7).
 
-    >>> round(combine((0.02, 0.005, 0.005, 0.0, 0.005, 1.15)), 6)
+    >>> combine((0.02, 0.005, 0.005, 0.0, 0.005, 1.15))
     0.04025
     """
     base, irregularity, variation, obstruction, vegetation, multiplier = columns
-    return (base + irregularity + variation + obstruction + vegetation) * multiplier
+    n = (base + irregularity + variation + obstruction + vegetation) * multiplier
+    # Table values are decimals: their sum is shown and exported as 0.076, not as
+    # 0.07600000000000001. Rounding keeps the order of low, best and high.
+    rounded = np.round(n, _DECIMALS)
+    return rounded if isinstance(n, np.ndarray) else float(rounded)
 
 
 def envelope(ranges: Mapping[Factor, Range]) -> Range:

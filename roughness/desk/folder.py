@@ -71,8 +71,17 @@ class SurveyFolder:
 
     @property
     def handbooks(self) -> Path:
-        """The folder with the agency's own tables and copies of those that were used."""
-        return self.folder / "handbooks"
+        """The folder with the agency's own tables and copies of those that were used.
+
+        Raises
+        ------
+        RecordError
+            Where it is a link: links are not followed in a survey.
+        """
+        folder = self.folder / "handbooks"
+        if folder.is_symlink():
+            raise RecordError("handbooks is a link; links are not followed in a survey")
+        return folder
 
     @property
     def path(self) -> Path:

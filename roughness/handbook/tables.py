@@ -57,7 +57,8 @@ class Grade:
     @property
     def published(self) -> Range:
         """The published range, its best value the typical one or the middle."""
-        middle = (self.low + self.high) / 2 if self.low < self.high else self.low
+        # The middle of two decimals is a decimal: 0.018, not 0.018000000000000002.
+        middle = round((self.low + self.high) / 2, 15) if self.low < self.high else self.low
         return Range(self.low, middle if self.best is None else self.best, self.high)
 
     def published_at(self, d50_mm: float) -> Range | None:
