@@ -5,8 +5,7 @@ from typing import Final
 from roughness.findings.facts import Facts, Flags
 from roughness.findings.ranges import NOISE
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule
-from roughness.findings.wording import in_words
-from roughness.quantities.printing import show_value
+from roughness.findings.wording import factor_value, in_words
 from roughness.survey.words import Factor
 
 # Lower limits of these grades in USGS WSP 2339; Cowan's values of the same grades lie above
@@ -45,7 +44,7 @@ def _neither_noted(facts: Facts, one: Factor, other: Factor) -> Flags:
 
 
 def _value(facts: Facts, factor: Factor, row: int) -> str:
-    return show_value(facts.factors[factor].best[row])
+    return factor_value(factor, facts.factors[factor].best[row])
 
 
 @rule(
@@ -146,7 +145,7 @@ def smoothest_base_in_nature(facts: Facts) -> Case:
     return Case(
         base.lower_bound & signs,
         lambda row: (
-            f"The base '{in_words(base.grade[row])}', {show_value(base.best[row])}, is the "
+            f"The base '{in_words(base.grade[row])}', {_value(facts, 'base', row)}, is the "
             "smoothest such a bed can be, but other factors show a natural stream; take the "
             "average value or say in a note why the bed is that smooth."
         ),

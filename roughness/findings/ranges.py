@@ -6,7 +6,7 @@ import numpy as np
 
 from roughness.findings.facts import FactorFacts, Facts, Flags
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule, rule_of_each
-from roughness.findings.wording import FACTOR_WORDS, in_words, starting
+from roughness.findings.wording import FACTOR_WORDS, factor_value, in_words, starting
 from roughness.quantities.printing import rounded, show_n, show_value
 from roughness.survey.words import FACTORS, NOT_ON_FLOOD_PLAINS, Factor
 
@@ -27,16 +27,20 @@ def _outside(chosen: FactorFacts) -> Flags:
     )
 
 
+def _best(chosen: FactorFacts, factor: Factor, row: int) -> str:
+    return f"{starting(FACTOR_WORDS[factor])} {factor_value(factor, chosen.best[row])}"
+
+
 def _says_outside(facts: Facts, factor: Factor, row: int) -> str:
     chosen = facts.factors[factor]
-    low, best, high = (show_value(c[row]) for c in (chosen.low, chosen.best, chosen.high))
-    least, most = (show_value(c[row]) for c in (chosen.published_low, chosen.published_high))
+    low, high, least, most = (
+        factor_value(factor, column[row])
+        for column in (chosen.low, chosen.high, chosen.published_low, chosen.published_high)
+    )
     published = f"published {least} to {most}" if least != most else f"single published {least}"
     grade = f" for '{in_words(chosen.grade[row])}'" if chosen.grade[row] else ""
-    return (
-        f"{starting(FACTOR_WORDS[factor])} {best}, from {low} to {high}, leaves the "
-        f"{published}{grade}"
-    )
+    told = _best(chosen, factor, row)
+    return f"{told}, from {low} to {high}, leaves the {published}{grade}"
 
 
 def _beyond(n: float, limit: float, side: str) -> str:
@@ -96,7 +100,7 @@ def own_value_without_note(facts: Facts, factor: Factor) -> Case:
     return Case(
         unbacked,
         lambda row: (
-            f"{starting(FACTOR_WORDS[factor])} {show_value(chosen.best[row])} rests on no "
+            f"{_best(chosen, factor, row)} rests on no "
             "published value and on no note; say in a note where it comes from."
         ),
     )
@@ -115,9 +119,9 @@ def inside_published_gap(facts: Facts, factor: Factor) -> Case:
     return Case(
         (chosen.best > chosen.gap_low) & (chosen.best < chosen.gap_high),
         lambda row: (
-            f"{starting(FACTOR_WORDS[factor])} {show_value(chosen.best[row])} lies between two "
-            f"grades: nothing is published from {show_value(chosen.gap_low[row])} to "
-            f"{show_value(chosen.gap_high[row])}."
+            f"{_best(chosen, factor, row)} lies between two "
+            f"grades: nothing is published from {factor_value(factor, chosen.gap_low[row])} to "
+            f"{factor_value(factor, chosen.gap_high[row])}."
         ),
     )
 

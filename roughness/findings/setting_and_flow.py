@@ -7,7 +7,7 @@ import numpy as np
 from roughness.findings.facts import Facts, Flags
 from roughness.findings.rule import Case, rule
 from roughness.findings.wording import in_words
-from roughness.quantities.printing import show_value
+from roughness.quantities.printing import show_addend, show_value
 
 MOST_BLOCKED: Final = 50.0  # percent, the end of the flood-plain table
 SAND: Final = "sand"
@@ -56,7 +56,7 @@ def lower_regime_from_table(facts: Facts) -> Case:
     return Case(
         _sand_bed(facts) & (base.word("regime") == "lower") & ~(base.own_best & base.noted),
         lambda row: (
-            f"The sand bed is in lower regime, but its base {show_value(base.best[row])} rests on "
+            f"The sand bed is in lower regime, but its base {show_addend(base.best[row])} rests on "
             "the table for upper regime; give a value for ripples or dunes, with a note."
         ),
     )
@@ -75,8 +75,8 @@ def lower_regime_own_value(facts: Facts) -> Case:
     return Case(
         _sand_bed(facts) & (base.word("regime") == "lower") & base.own_best & base.noted,
         lambda row: (
-            f"The sand bed is in lower regime and its base {show_value(base.best[row])} is a value "
-            "of the crew's own; does its note say which bed forms it stands for?"
+            f"The sand bed is in lower regime and its base {show_addend(base.best[row])} is a "
+            "value of the crew's own; does its note say which bed forms it stands for?"
         ),
     )
 

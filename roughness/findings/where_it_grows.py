@@ -8,7 +8,7 @@ from roughness.findings.facts import Facts, Numbers
 from roughness.findings.ranges import NOISE
 from roughness.findings.rule import COMMON_PRACTICE, Case, rule
 from roughness.findings.wording import ratio
-from roughness.quantities.printing import show_value
+from roughness.quantities.printing import show_addend, show_value
 
 WIDE: Final = 30.0  # width over depth
 NARROW: Final = 10.0
@@ -42,7 +42,7 @@ def bank_plants_against_shape(facts: Facts) -> Case:
         times = ratio(facts.width_m[row], depth[row], 0)
         return (
             f"Plants stand on the banks alone and the section is {times} times as wide as deep, "
-            f"but vegetation adds {show_value(chosen.best[row])}; up to {show_value(usual)} is "
+            f"but vegetation adds {show_addend(chosen.best[row])}; up to {show_addend(usual)} is "
             "usual there. Lower it, tell bed and banks apart, or say why in a note."
         )
 
@@ -66,7 +66,7 @@ def few_plants_for_their_value(facts: Facts) -> Case:
         (share < SMALL_SHARE) & (chosen.best > MOST_IF_WIDE + NOISE),
         lambda row: (
             f"Plants line {show_value(share[row])} % of the wetted perimeter, but vegetation adds "
-            f"{show_value(chosen.best[row])}; lower it, tell bed and banks apart, or say why in "
+            f"{show_addend(chosen.best[row])}; lower it, tell bed and banks apart, or say why in "
             "a note."
         ),
     )

@@ -1,7 +1,8 @@
 """How grades and factors are called inside the sentences of findings."""
 
 from roughness.quantities.foreign_text import printable
-from roughness.quantities.printing import enumerate_words, rounded
+from roughness.quantities.printing import enumerate_words, rounded, show_addend, show_value
+from roughness.survey.words import MULTIPLIER, Factor
 
 MOST_TIMES = 1e6
 
@@ -13,6 +14,11 @@ FACTOR_WORDS = {
     "vegetation": "vegetation",
     "meander": "multiplier for bends",
 }
+
+
+def factor_value(factor: Factor, value: float) -> str:
+    """Print a factor's value as the tables do: ``0.020``, and ``1.15`` for the multiplier."""
+    return show_value(value) if factor == MULTIPLIER else show_addend(value)
 
 
 def in_words(key: str) -> str:

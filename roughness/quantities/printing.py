@@ -52,6 +52,19 @@ def show_value(value: float) -> str:
     return f"{_decimal(value).normalize():f}"
 
 
+def show_addend(value: float) -> str:
+    """Print what a factor adds to n as the tables do: three decimals, up to five where it has more.
+
+    >>> show_addend(0.02), show_addend(0.0285), show_addend(0.019 - 0.014 / 6), show_addend(0)
+    ('0.020', '0.0285', '0.01667', '0')
+    """
+    exact = _decimal(value)
+    if not isfinite(value) or not exact:
+        return show_value(value)
+    three = rounded(value, 3)
+    return three if Decimal(three) == exact else show_value(float(rounded(value, 5)) or value)
+
+
 def show_share(share: float) -> str:
     """Print a share as a whole percentage: ``55 %``."""
     return f"{rounded(share * 100, 0)} %"

@@ -3,7 +3,7 @@
 from typing import Final
 
 from roughness.quantities.foreign_text import printable
-from roughness.quantities.printing import rounded, show_value
+from roughness.quantities.printing import show_addend, show_value
 from roughness.quantities.ranges import Range
 from roughness.reasoning.account import Step
 from roughness.survey.words import MULTIPLIER, Factor
@@ -37,12 +37,8 @@ def capital(sentence: str) -> str:
 
 
 def shown(factor: Factor, value: float) -> str:
-    """Print a factor's value with the three decimals of the tables, or all it has."""
-    if factor == MULTIPLIER or value == 0:
-        return show_value(value)
-    three = rounded(value, 3)
-    # A third of a range is no value that somebody typed: no more than five decimals of it.
-    return three if _close(float(three), value) else show_value(float(rounded(value, 5)))
+    """Print a factor's value as the tables do."""
+    return show_value(value) if factor == MULTIPLIER else show_addend(value)
 
 
 def _value(step: Step) -> str:

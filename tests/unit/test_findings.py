@@ -348,8 +348,8 @@ def test_a_finding_about_one_factor_names_that_factor() -> None:
     (finding,) = findings({"vegetation.high": 0.02})
     assert (finding.level, finding.factor) == ("stop", "vegetation")
     assert finding.says == (
-        "Vegetation 0.006, from 0.002 to 0.02, leaves the published 0.002 to 0.01 for 'small', "
-        "and no note says why; say why in a note or return to the published range."
+        "Vegetation 0.006, from 0.002 to 0.020, leaves the published 0.002 to 0.010 for "
+        "'small', and no note says why; say why in a note or return to the published range."
     )
 
 
