@@ -15,7 +15,7 @@ from pathlib import Path
 from typing import NoReturn, Protocol, cast
 
 from roughness import __version__
-from roughness.errors import RoughnessError
+from roughness.errors import RoughnessError, UnknownNameError
 
 DONE, STANDS_STOPPED, WRONG_INPUT = 0, 1, 2
 
@@ -120,21 +120,25 @@ def _run_verb(name: str, words: Sequence[str]) -> int | Screens:
 
 
 def _open(words: Sequence[str]) -> int | Screens:
+    _refuse_mistyped_verb(words)
     parser = _Parser(prog="roughness", allow_abbrev=False)
     parser.add_argument("survey", nargs="?", type=Path)
     parser.add_argument("--by")
     args = parser.parse_args(words)
-    if args.survey is not None and not args.survey.exists() and "/" not in str(args.survey):
-        from roughness.quantities.foreign_text import nearest
-
-        hint = nearest(str(args.survey), VERBS)
-        if hint:
-            complain(f"{args.survey} is neither a verb nor a survey; {hint}")
-            return WRONG_INPUT
     if not (sys.stdin.isatty() and sys.stdout.isatty()):
         complain("the screens need a terminal; `roughness list SURVEY` prints the table")
         return WRONG_INPUT
     return Screens(args.survey, by=args.by)
+
+
+def _refuse_mistyped_verb(words: Sequence[str]) -> None:
+    first = words[0] if words else "-"
+    if first.startswith("-") or "/" in first or "\0" in first or Path(first).exists():
+        return
+    from roughness.quantities.foreign_text import nearest
+
+    if hint := nearest(first, VERBS):
+        raise UnknownNameError(f"{first} is neither a verb nor a survey", wanted=hint)
 
 
 def help_page() -> str:
