@@ -71,6 +71,10 @@ def _in_one_sentence(kind: type, error: ValidationError, where: str) -> InputErr
     path = [str(step) for step in first["loc"]]
     field, met = ".".join(path), first.get("input")
     place = f"{where}: {printable(field)}" if field else where
+    if first["type"] == "json_invalid":
+        return InputError(
+            "a text holds half of a surrogate pair", where=where, wanted="write the whole sign"
+        )
     if first["type"] in ("unexpected_keyword_argument", "extra_forbidden"):
         return _unknown_key(kind, path, where)
     if first["type"] in ("missing", "missing_argument"):

@@ -128,6 +128,10 @@ WRONG_TEXT: dict[str, tuple[str, str]] = {
     "not JSON": ("n = 0.03", "not JSON"),
     "cut JSON": ('{"handbook": ', "not JSON"),
     "a list": ("[]", "JSON object"),
+    "half of a sign": (
+        with_factor("base", {"grade": "firm-soil", "note": "a\ud800"}),
+        "half of a surrogate pair",
+    ),
     "deeply nested": (NESTED, "deeper"),
 }
 
