@@ -136,23 +136,29 @@ class SurveyLines:
                 self._complete.pop(name, None)
         return len(names)
 
-    def forget(self, names: Sequence[str]) -> None:
-        """Let reaches be read again, because their files changed."""
-        self._all_of = None
-        for name in names:
-            self._rows.pop(name, None)
-            self._complete.pop(name, None)
-
     def find_over_survey(self) -> None:
         """Let the rules over the whole survey say what they find in what was read."""
-        order = {name: at for at, name in enumerate(self.names)}
-        rows = [
-            replace(row, order=order[name]) for name in order for row in self._rows.get(name, [])
+        self.take(self.found_over_survey(self.rows()))
+
+    def rows(self) -> list[Row]:
+        """Return the rows that were read, in stream order."""
+        return [
+            replace(row, order=order)
+            for order, name in enumerate(self.names)
+            for row in self._rows.get(name, [])
         ]
-        complete: dict[str, list[Row]] = {}
+
+    @staticmethod
+    def found_over_survey(rows: list[Row]) -> dict[str, list[Row]]:
+        """Return the rows by reach with what the rules over a survey say; touches nothing."""
+        found: dict[str, list[Row]] = {}
         for row in with_survey_findings(rows):
-            complete.setdefault(row.reach.reach, []).append(row)
-        self._complete, self._all_of = complete, None
+            found.setdefault(row.reach.reach, []).append(row)
+        return found
+
+    def take(self, found: dict[str, list[Row]]) -> None:
+        """Show these rows from now on, until their reach is read again."""
+        self._complete, self._all_of = found, None
 
     def lines(
         self, condition: str | None, *, filtered: str = "", weak_first: bool = False

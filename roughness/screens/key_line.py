@@ -1,0 +1,57 @@
+"""The keys that work now, on one line at the bottom of a screen."""
+
+from rich.cells import cell_len
+from rich.text import Text
+from textual.screen import Screen
+from textual.widgets import Static
+
+_SHOWN_AS = {
+    "question_mark": "?",
+    "slash": "/",
+    "plus": "+",
+    "enter": "⏎",
+    "escape": "Esc",
+    "left": "←",
+    "right": "→",
+    "up": "↑",
+    "down": "↓",
+    "backspace": "⌫",
+    "tab": "Tab",
+}
+
+
+class KeyLine(Static):
+    """Names the bindings of the screen that are shown, as many as fit; help comes last."""
+
+    DEFAULT_CSS = """
+    KeyLine { dock: bottom; height: 1; }
+    """
+
+    def on_mount(self) -> None:
+        """Follow the bindings of the screen."""
+        self.screen.bindings_updated_signal.subscribe(self, self._changed)
+
+    def on_resize(self) -> None:
+        """Name more keys where there is more room."""
+        self._draw()
+
+    def _changed(self, _: Screen[object]) -> None:
+        self._draw()
+
+    def _draw(self) -> None:
+        bindings = [
+            (_SHOWN_AS.get(active.binding.key, active.binding.key), active.binding.description)
+            for active in self.screen.active_bindings.values()
+            if active.binding.show and active.enabled
+        ]
+        bindings.sort(key=lambda pair: pair[0] == "?")
+        line = Text(no_wrap=True, overflow="crop")
+        room = self.size.width - sum(len(f"{k} {w}  ") for k, w in bindings if k == "?")
+        for key, word in bindings:
+            told = f"{key} {word}"
+            if key != "?" and line.cell_len + cell_len(told) + 2 > room:
+                continue
+            line.append("  " if line.plain else "")
+            line.append(key, style="bold")
+            line.append(f" {word}")
+        self.update(line)
