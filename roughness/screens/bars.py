@@ -25,12 +25,13 @@ def column(n: float, width: int) -> int:
 
 
 def axis(width: int) -> str:
-    """Return the labels of the axis; those that would touch the one before are left out."""
+    """Return the labels of the axis; one without room is moved by a column or left out."""
     cells = [" "] * width
     free_from = 0
     for tick in _TICKS:
         label = f"{tick:.2f}"[1:]
         start = column(tick, width) - 1
+        start += start + 1 == free_from
         if start >= free_from and start + len(label) <= width:
             cells[start : start + len(label)] = label
             free_from = start + len(label) + 1

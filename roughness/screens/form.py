@@ -57,7 +57,8 @@ class Form(ModalScreen[T | None], Generic[T]):
     CSS_PATH = "dialog.tcss"
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("escape", "leave", "leave"),
-        Binding("enter", "next", "next", show=False),
+        # Before the field sees it: what is typed next belongs to the next field already.
+        Binding("enter", "next", "next", show=False, priority=True),
         Binding("down", "app.focus_next", "next", show=False),
         Binding("up", "app.focus_previous", "previous", show=False),
     ]
@@ -95,15 +96,16 @@ class Form(ModalScreen[T | None], Generic[T]):
         empty = next((f for f in self._fields if not f.value and not f.choices), self._fields[0])
         self.query_one(f"#{empty.key}").focus()
 
-    def on_input_submitted(self) -> None:
-        """Go on from a text field as from any other."""
-        self.action_next()
+    def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
+        """Leave Enter to a field of many lines."""
+        return action != "next" or not isinstance(self.focused, TextArea)
 
     def action_next(self) -> None:
         """Go to the next field, or take the form from its last one."""
         last = f"#{self._fields[-1].key}"
         if self.focused is not None and self.focused in (self.query_one(last), self._taking):
-            self._submit()
+            # Behind the keys that wait for the field: typing fast must not lose its end.
+            self.focused.call_later(self._submit)
         else:
             self.focus_next()
 

@@ -43,7 +43,6 @@ class HandbookScreen(Screen[None]):
         Binding("left", "turn(-1)", "factor before", show=False),
         Binding("b", "book", "another handbook"),
         Binding("slash", "search", "search all"),
-        Binding("enter", "about", "about this handbook"),
         Binding("escape", "back", "back"),
         Binding("h", "leave", "back", show=False),
         Binding("question_mark", "help", "help"),
@@ -74,7 +73,7 @@ class HandbookScreen(Screen[None]):
         )
         yield OptionList(id="rows", compact=True)
         yield Static("", id="row")
-        yield KeyLine()
+        yield KeyLine("⏎ about it")
 
     def on_mount(self) -> None:
         """Show the first table."""
@@ -119,7 +118,7 @@ class HandbookScreen(Screen[None]):
         name, places = 17, 15
         short = row.grade.short
         if searching:
-            short = f"{row.handbook.key} {row.factor}: {short}"
+            short = f"{row.place}: {short}"
         tail = f" {rows.IN_SHORT[row.grade.provenance]}" if width >= _WIDE - 4 else ""
         rest = width - name - places - 2 - (18 if tail else 0)
         told = f"{fitted(printable(row.grade.name), name)} {fitted(row.range, places)} "

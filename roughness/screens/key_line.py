@@ -2,6 +2,7 @@
 
 from rich.cells import cell_len
 from rich.text import Text
+from textual.binding import Binding
 from textual.screen import Screen
 from textual.widgets import Static
 
@@ -21,11 +22,21 @@ _SHOWN_AS = {
 
 
 class KeyLine(Static):
-    """Names the bindings of the screen that are shown, as many as fit; help comes last."""
+    """Names the bindings of the screen that are shown, as many as fit; help comes last.
+
+    Parameters
+    ----------
+    lead : str
+        Keys of the focused widget, told first.
+    """
 
     DEFAULT_CSS = """
     KeyLine { dock: bottom; height: 1; }
     """
+
+    def __init__(self, lead: str = "") -> None:
+        super().__init__()
+        self._lead = lead
 
     def on_mount(self) -> None:
         """Follow the bindings of the screen."""
@@ -40,18 +51,22 @@ class KeyLine(Static):
 
     def _draw(self) -> None:
         bindings = [
-            (_SHOWN_AS.get(active.binding.key, active.binding.key), active.binding.description)
+            (_shown(active.binding), active.binding.description)
             for active in self.screen.active_bindings.values()
             if active.binding.show and active.enabled
         ]
         bindings.sort(key=lambda pair: pair[0] == "?")
-        line = Text(no_wrap=True, overflow="crop")
+        line = Text(self._lead, no_wrap=True, overflow="crop")
         room = self.size.width - sum(len(f"{k} {w}  ") for k, w in bindings if k == "?")
         for key, word in bindings:
             told = f"{key} {word}"
             if key != "?" and line.cell_len + cell_len(told) + 2 > room:
                 continue
             line.append("  " if line.plain else "")
-            line.append(key, style="bold")
-            line.append(f" {word}")
+            line.append(f"{key} ", style="bold")
+            line.append(word)
         self.update(line)
+
+
+def _shown(binding: Binding) -> str:
+    return binding.key_display or _SHOWN_AS.get(binding.key, binding.key)

@@ -62,4 +62,4 @@ class Pick(Widget, can_focus=True):
             return line
         place = f"{self._choices.index(self.value) + 1} of {len(self._choices)}"
         style = "reverse" if self.has_focus else "bold"
-        return Text.assemble("‹ ", (self.value, style), f" ›   {place}", no_wrap=True)
+        return Text.assemble("‹ ", (self.value, style), f" ›   ←→ {place}", no_wrap=True)

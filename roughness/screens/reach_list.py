@@ -37,7 +37,7 @@ class Columns:
     @classmethod
     def within(cls, width: int) -> "Columns":
         """Return the columns for a list of ``width`` cells."""
-        name, part = (24, 18) if width >= _WIDE else (16, 12)
+        name, part = (24, 18) if width >= _WIDE else (15, 11)
         return cls(name, part, max(8, width - name - part - _STATUS - 4))
 
 
@@ -181,8 +181,11 @@ class ReachList(ScrollView, can_focus=True):
         columns = Columns.within(width)
         if y == 0:
             lead = " " * (columns.name + columns.part + 3)
-            axis = Segment(lead + bars.axis(columns.axis), self._style("axis"))
-            return Strip([axis]).adjust_cell_length(width, self.rich_style)
+            labels = bars.axis(columns.axis)
+            lead += " " * (len(labels) - len(labels.lstrip()))
+            style = self.rich_style + self._style("axis")
+            axis = [Segment(lead, self.rich_style), Segment(labels.lstrip(), style)]
+            return Strip(axis).adjust_cell_length(width, self.rich_style)
         at = y - 1 + round(self.scroll_y)
         if at >= len(self._lines):
             return Strip.blank(width, self.rich_style)
@@ -193,15 +196,19 @@ class ReachList(ScrollView, can_focus=True):
         line, plain = self._lines[at], self.rich_style
         name = "" if self._is_named_above(at) else printable(line.row.reach.reach)
         mark = "›" if at == self._at else " "
-        says, style = _drawn(line, columns.axis), self._style("bar")
-        if line.row.estimate is None:
-            style = self._style("faint")
+        drawn = plain + self._style("bar" if line.row.estimate else "faint")
         status = plain + self._style("stop") if line.count("stop") else plain
+        if at == self._at:
+            drawn = status = plain
+        says = fitted(_drawn(line, columns.axis), columns.axis)
+        lead = len(says) - len(says.lstrip())
         return [
             Segment(f"{mark}{fitted(name, columns.name)} ", plain),
             Segment(f"{fitted(line.part_word, columns.part)} ", plain),
-            Segment(fitted(says, columns.axis), plain + style),
-            Segment(f" {fitted(line.status, _STATUS)}", status),
+            # Some pictures drop blanks at the start of a piece of text.
+            Segment(says[:lead], plain),
+            Segment(says[lead:] + " ", drawn),
+            Segment(fitted(line.status, _STATUS), status),
         ]
 
     def _is_named_above(self, at: int) -> bool:

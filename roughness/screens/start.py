@@ -22,10 +22,11 @@ from roughness.screens.key_line import KeyLine
 from roughness.screens.menu import numbered
 from roughness.screens.survey import SurveyScreen
 
-_WHAT_THIS_IS: Final = """\
-Manning's n for every reach of a stream, from published tables, with a range and
-the reasons. You are asked factor by factor; each choice shows what it does to n,
-and is kept at once in a record that others can check."""
+_WHAT_THIS_IS: Final = (
+    "Manning's n for every reach of a stream, from published tables, with a range and the"
+    " reasons. You are asked factor by factor; each choice shows what it does to n, and is"
+    " kept at once in a record that others can check."
+)
 _MOST_RECENT: Final = 5
 _ENTRIES: Final = ("look around: a copy of the demo survey", "new survey", "open a folder")
 
@@ -45,7 +46,6 @@ class StartScreen(Screen[None]):
 
     CSS_PATH = "start.tcss"
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("enter", "take", "open", show=True),
         Binding("h", "handbook", "handbook"),
         Binding("q", "app.quit", "quit"),
         Binding("question_mark", "help", "help"),
@@ -63,7 +63,7 @@ class StartScreen(Screen[None]):
         yield Static("", id="message")
         yield OptionList(id="entries", compact=True)
         yield Static(Text("n is a judgement: calibrate it to observed flows where they exist."))
-        yield KeyLine()
+        yield KeyLine("↑↓ ⏎ or a number: open")
 
     def on_mount(self) -> None:
         """List the surveys of late, and open what was asked for."""
@@ -102,10 +102,6 @@ class StartScreen(Screen[None]):
         if event.character and event.character in "123456789"[:count]:
             event.stop()
             self._pick(int(event.character) - 1)
-
-    def action_take(self) -> None:
-        """Open the entry under the cursor."""
-        self.query_one(OptionList).action_select()
 
     def action_handbook(self) -> None:
         """Open the published tables."""

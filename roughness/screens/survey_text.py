@@ -53,30 +53,34 @@ def detail_text(line: SurveyLine | None, lines: int, width: int) -> Text:
     """
     if line is None:
         return Text("Nothing to show here. + adds a reach.")
-    first = fitted(_number_sentence(line), width).rstrip()
+    first = _number_sentence(line, width)
     told = [first, *_finding_lines(line.row.findings, lines - 1, width)]
     return Text("\n".join(told), no_wrap=True)
 
 
-def _number_sentence(line: SurveyLine) -> str:
+def _number_sentence(line: SurveyLine, width: int) -> str:
     row = line.row
-    name = printable(row.reach.reach)
     if row.estimate is None:
-        return f"{name}: {_what_to_do(line)}"
-    spread = row.estimate.spread
-    told = (
-        f"{name}, {line.part_word}: n {show_n(row.estimate.n.best)}, {show_range(row.estimate.n)}"
-    )
-    if row.adopted is not None:
-        return f"{told}; adopted {show_n(row.adopted.n)}: {printable(row.adopted.reason)}"
-    return f"{told}; spread of the choices {show_n(spread.p16)} to {show_n(spread.p84)}"
+        told = _what_to_do(line)
+    else:
+        n, spread = row.estimate.n, row.estimate.spread
+        told = f"n {show_n(n.best)}, {show_range(n)}; "
+        told += f"spread of the choices {show_n(spread.p16)} to {show_n(spread.p84)}"
+        if row.adopted is not None:
+            reason = printable(row.adopted.reason)
+            told = f"adopted {show_n(row.adopted.n)} ({reason}); estimate {told}"
+    name = printable(row.reach.reach)
+    name = f"{name}, {line.part_word}" if row.part else name
+    # The names stand in the list too: the numbers are what must not be cut.
+    room = max(12, width - cell_len(told) - 2)
+    return fitted(f"{fitted(name, min(room, cell_len(name)))}: {told}", width).rstrip()
 
 
 def _what_to_do(line: SurveyLine) -> str:
     if not line.read:
         return "not read yet"
     if line.row.part is None:
-        return "no part of the cross-section yet; Enter picks one and starts"
+        return "no part yet; Enter picks one and starts"
     if line.row.condition is None:
         return line.apart
     missing = line.row.place.missing if line.row.place else ()
