@@ -70,16 +70,17 @@ def resolved_at(place: Place, question: Question) -> Resolved | None:
 def n_so_far(place: Place, ranges: Ranges | None = None) -> Range | None:
     """Return n of what was chosen so far, open factors adding nothing; None before the base.
 
+    A segment whose base is still open is left out: without a bed it has no n.
     ``ranges`` stands in for what stands in the place.
     """
     known = standing_ranges(place) if ranges is None else ranges
-    if not any("base" in of_zone for of_zone in known.values()):
-        return None
-    zones = [_filled(known.get(zone, {})) for zone in place.zones]
-    if len(zones) == 1:
-        return additive.envelope(zones[0])
+    begun = [at for at, zone in enumerate(place.zones) if "base" in known.get(zone, {})]
+    zones = [_filled(known[place.zones[at]]) for at in begun]
+    if len(zones) < 2:
+        return additive.envelope(zones[0]) if zones else None
     return additive.envelope_of_segments(
-        [_columns(zone) for zone in zones], [s.perimeter_percent for s in place.segments]
+        [_columns(zone) for zone in zones],
+        [place.segments[at].perimeter_percent for at in begun],
     )
 
 

@@ -17,7 +17,8 @@ from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_value
 from roughness.screens.key_line import KeyLine
-from roughness.screens.walk_course import Course, NoteDueError, SandDueError
+from roughness.screens.walk_at_hand import NoteDueError, SandDueError
+from roughness.screens.walk_course import Course
 from roughness.screens.walk_dialogs import WalkDialogs
 from roughness.screens.walk_next import open_parts
 from roughness.screens.walk_stack import FactorStack, names_of, origin_of
@@ -25,10 +26,11 @@ from roughness.screens.walk_sum import SumSoFar
 from roughness.screens.walk_summary import CAUTIONS, Summary
 from roughness.screens.walk_table import GradeTable, detail
 
+_ROOM_FOR_BOTH = 34
 _AT_A_FACTOR = frozenset(
-    "move nudge widen values measured carry both digit".split()  # noqa: SIM905 -- read as words
+    "take nudge widen values measured carry both digit".split()  # noqa: SIM905 -- read as words
 )
-_AT_THE_END = frozenset(("adopt", "unfold"))
+_AT_THE_END = frozenset(("adopt", "unfold", "go_on"))
 
 
 class WalkScreen(Screen[None]):
@@ -52,6 +54,7 @@ class WalkScreen(Screen[None]):
     CSS_PATH = "walk.tcss"
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("enter", "take", "take"),
+        Binding("enter", "go_on", "on"),
         Binding("left", "nudge(-1)", show=False),
         Binding("right", "nudge(1)", "value", key_display="←→"),
         Binding("shift+left", "widen(-1)", show=False),
@@ -128,7 +131,10 @@ class WalkScreen(Screen[None]):
     def draw(self) -> None:
         """Show everything anew, after a choice."""
         self.query_one("#crumbs", Static).update(self._crumbs())
-        self.query_one(FactorStack).show(self.course)
+        stack = self.query_one(FactorStack)
+        stack.show(self.course)
+        # The reasoning names every factor again: where lines are few, it has them.
+        stack.display = not self.at_end or self.size.height >= _ROOM_FOR_BOTH
         self.query_one(SumSoFar).show(self.course)
         self.query_one(GradeTable).display = not self.at_end
         summary = self.query_one(Summary)
@@ -195,8 +201,6 @@ class WalkScreen(Screen[None]):
 
     def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:  # noqa: ARG002
         """Leave out the keys that do nothing now."""
-        if action in ("move", "page"):
-            return True
         if action in _AT_THE_END:
             return self.at_end
         return not (self.at_end and action in _AT_A_FACTOR)
@@ -215,10 +219,7 @@ class WalkScreen(Screen[None]):
                 self.say(f"There is no grade {event.key} here.")
 
     def action_take(self) -> None:
-        """Take the highlighted grade and go on; at the end, go on to the next part."""
-        if self.at_end:
-            self._go_on()
-            return
+        """Keep the marked grade and go on."""
         self.say()
         question = self.course.question
         try:
@@ -245,7 +246,8 @@ class WalkScreen(Screen[None]):
             course.go_to(questions[at])
         self.draw()
 
-    def _go_on(self) -> None:
+    def action_go_on(self) -> None:
+        """Go on from the summary: to a factor that is open again, or to the next part."""
         if self.course.place.missing:
             self.course.go_to_open()
             self.draw()
@@ -276,7 +278,9 @@ class WalkScreen(Screen[None]):
     def action_nudge(self, by: int) -> None:
         """Move the best value within its range."""
         self.say()
-        if not self.course.nudge(by):
+        if not self.course.is_marked:
+            self.say("Mark a grade first: ↑↓.")
+        elif not self.course.nudge(by):
             self.say("At the end of the range: ⇧→ widens it, = types other values.")
         self.draw_table()
 

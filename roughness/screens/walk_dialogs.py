@@ -29,6 +29,9 @@ if TYPE_CHECKING:
     from roughness.screens.walk_course import Course
 
 
+_MARK_FIRST = "Mark a grade first: ↑↓."
+
+
 class WalkDialogs:
     """Runs the dialogs of a walk, one at a time; what is refused is said on the walk."""
 
@@ -96,6 +99,8 @@ class WalkDialogs:
         course = self._course
         if course.question is None:
             self._note_of_driver()
+        elif not course.is_marked:
+            self._screen.say(_MARK_FIRST)
         elif course.standing is None or course.is_draft or not course.is_standing:
             name = course.offer.grade.name
             self._take_with_note(f"Take {name} with a note", self._note_now())
@@ -147,6 +152,9 @@ class WalkDialogs:
     def values(self) -> None:
         """Type low, best and high of the highlighted grade."""
         course = self._course
+        if not course.is_marked:
+            self._screen.say(_MARK_FIRST)
+            return
         assert course.question is not None
         factor, grade = course.question[1], course.offer.grade.name
         self._write(values_dialog(factor, grade, course.range_at_hand(), course.set_range))

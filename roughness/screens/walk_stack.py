@@ -16,6 +16,7 @@ from roughness.survey.words import MULTIPLIER, Factor, factors_of
 
 _BAR: Final = "█"
 _FACTOR, _VALUE, _LONGEST_BAR = 15, 7, 24
+_NAME, _NAME_IN_CELL, _SHORTEST_BAR = 24, 15, 6
 # The longest bar stands for at least this much n, so that small factors look small.
 _FULL: Final = 0.05
 # Where, message, question, heading of the table, whole of a row, sum and keys.
@@ -67,7 +68,8 @@ def stack_lines(place: Place, at: Question | None, width: int, roomy: bool) -> l
             cells = [_cell(place, (z, factor), _cell_width(place, width)) for z in place.zones]
             lines.append(label + Text("").join(cells))
         else:
-            lines.append(label + _whole(place, (None, factor), width - _FACTOR))
+            names = _name_width(_cell_width(place, width)) if told_apart else _NAME
+            lines.append(label + _whole(place, (None, factor), width - _FACTOR, names))
     if to_come:
         lines.append(Text(f" to come: {', '.join(to_come)}", style="dim"))
     return lines
@@ -86,7 +88,7 @@ def _heading(place: Place, width: int) -> Text:
         legend.append(f"{CARRIED} carried, not confirmed")
     if any(s and s.inherited_from for s in standing):
         legend.append(f"{INHERITED} from the other condition")
-    line = Text(f" {'of each:':{_FACTOR - 1}}{''.join(cells).rstrip()}", style="dim")
+    line = Text(f" {'perimeter:':{_FACTOR - 1}}{''.join(cells).rstrip()}", style="dim")
     if legend:
         line.append(f"  {', '.join(legend)}")
     return line
@@ -100,29 +102,32 @@ def _cell(place: Place, question: Question, width: int) -> Text:
     """Draw one segment's choice in its column."""
     standing, resolved = place.at(*question), resolved_at(place, question)
     if standing is None or resolved is None:
-        return Text(set_cell_size("·", width), style="dim")
+        return Text(set_cell_size(" ·", width), style="dim")
     mark = INHERITED if standing.inherited_from else CARRIED if standing.carried_from else " "
     grade = resolved.grade.name if resolved.grade else "own value"
     value = _value(question[1], resolved.range.best)
-    bar_width = max(0, width - _FACTOR - _VALUE - 2) if width >= _FACTOR + _VALUE + 6 else 0
-    name_width = width - _VALUE - bar_width - 2
+    names = _name_width(width)
+    bar_width = max(0, width - names - _VALUE - 2)
     bar = _bar(_added(place, question), bar_width)
-    return Text(
-        f"{mark}{_fitted(printable(grade), name_width - 1)} {value:<{_VALUE - 1}}"
-        f"{bar:<{bar_width + 1}}"[:width].ljust(width)
-    )
+    cell = f"{mark}{_fitted(printable(grade), names - 1)} {value:<{_VALUE - 1}} {bar}"
+    return Text(_fitted(cell, width))
 
 
-def _whole(place: Place, question: Question, width: int) -> Text:
+def _name_width(cell: int) -> int:
+    """Return the columns for a grade's name in a column of a segment; the bar comes last."""
+    roomy = cell >= _NAME_IN_CELL + _VALUE + _SHORTEST_BAR
+    return _NAME_IN_CELL if roomy else max(4, cell - _VALUE - 1)
+
+
+def _whole(place: Place, question: Question, width: int, name_width: int) -> Text:
     """Draw the choice for the whole part: grade, value, bar, and where it comes from."""
     standing, resolved = place.at(*question), resolved_at(place, question)
     if standing is None or resolved is None:
-        return Text("·", style="dim")
+        return Text(" ·", style="dim")
     grade = resolved.grade.name if resolved.grade else "own value"
     value = _value(question[1], resolved.range.best)
     origin = origin_of(standing)
-    name_width = 24
-    line = Text(f"{_fitted(printable(grade), name_width)} {value:<{_VALUE}}")
+    line = Text(f" {_fitted(printable(grade), name_width - 1)} {value:<{_VALUE}}")
     room = width - line.cell_len
     bar = _bar(_added(place, question), _LONGEST_BAR)
     if origin and room - len(origin) - 1 < _LONGEST_BAR:

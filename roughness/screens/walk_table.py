@@ -7,10 +7,12 @@ from rich.cells import cell_len
 from rich.text import Text
 from textual.widget import Widget
 
+from roughness.handbook import Grade
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import enumerate_words, rounded, show_n, show_value
 from roughness.quantities.ranges import Range
-from roughness.screens.walk_course import Course, GradeRow
+from roughness.screens.walk_at_hand import GradeRow
+from roughness.screens.walk_course import Course
 from roughness.survey.words import MULTIPLIER
 
 SUGGESTED, TAKEN = "◆", "✓"
@@ -42,7 +44,7 @@ def table_lines(course: Course, width: int, height: int) -> list[Text]:
     if not rows or height < 2:
         return []
     water = any(row.water_cm is not None for row in rows)
-    name = max(cell_len(row.offer.grade.name) for row in rows)
+    name = max(cell_len(_name(row.offer.grade)) for row in rows)
     told = suggestion(course)
     lines = [_heading(told or _HOW, _verb(course), width, water)]
     drawn: list[Text] = []
@@ -93,11 +95,17 @@ def _row(row: GradeRow, at: int, highlighted: bool, shape: tuple[int, int, bool]
     right = f"{_range(row.range):>{_RANGE}}{show_n(row.n.best) if row.n else '':>{_N + 1}}"
     if water:
         right += f"{_water(row.water_cm):>{_WATER}}"
-    left = Text(f"{marks}{grade.name:<{name}}  {printable(grade.short)}")
+    left = Text(f"{marks}{_name(grade):<{name}}  {printable(grade.short)}")
     left.truncate(max(0, width - len(right) - 1), overflow="ellipsis", pad=True)
     line = left + Text(f" {right}")
     line.stylize("bold reverse" if highlighted else "bold" if row.standing else "")
     return line
+
+
+def _name(grade: Grade) -> str:
+    """Return the name as it stands in the table: 'smoothest' is said by the heading above."""
+    name = printable(grade.name)
+    return name.partition(",")[0] if grade.lower_bound else name
 
 
 def _range(range_: Range | None) -> str:
@@ -138,8 +146,8 @@ def _window(drawn: Sequence[Text], cursor: int, height: int) -> list[Text]:
 
 def detail(course: Course) -> Text:
     """Return the whole of the highlighted row: value, range, criterion, source."""
-    if course.offers is None:
-        return Text("")
+    if not course.is_marked:
+        return Text("Nothing is taken before you choose. ↑↓ mark a grade and show it in full.")
     grade, range_ = course.offer.grade, course.range_at_hand()
     line = Text()
     if range_ is not None:
