@@ -5,9 +5,12 @@ they are first used, so that ``import roughness`` alone costs nearly nothing.
 """
 
 from importlib import import_module
-from typing import TYPE_CHECKING, Any
 
+# Not from `typing`, which takes longer to load than all the rest of `--version`.
+TYPE_CHECKING = False
 if TYPE_CHECKING:
+    from typing import Any
+
     from roughness.desk.estimating import estimate as estimate
     from roughness.shelf.handbooks import load_handbook as load_handbook
 
@@ -20,7 +23,7 @@ _WHERE = {
 }
 
 
-def __getattr__(name: str) -> Any:
+def __getattr__(name: str) -> "Any":
     if name in _WHERE:
         return getattr(import_module(_WHERE[name]), name)
     raise AttributeError(f"module 'roughness' has no attribute {name!r}")

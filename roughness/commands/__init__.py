@@ -4,18 +4,21 @@ Exit status of every verb: 0 done; 1 done, and a ``stop`` finding or a failed ch
 stands; 2 the input is wrong (one sentence on stderr, nothing written).
 """
 
-import argparse
+from __future__ import annotations
+
 import os
 import sys
-from collections.abc import Sequence
 from contextlib import suppress
-from dataclasses import dataclass
 from importlib import import_module
-from pathlib import Path
-from typing import NoReturn, Protocol, cast
 
 from roughness import __version__
 from roughness.errors import RoughnessError, UnknownNameError
+
+# Not from `typing`, which takes longer to load than all the rest of `--version`.
+TYPE_CHECKING = False
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+    from pathlib import Path
 
 DONE, STANDS_STOPPED, WRONG_INPUT = 0, 1, 2
 
@@ -48,29 +51,11 @@ where they exist, and let a licensed practitioner review it.
 """
 
 
-@dataclass(frozen=True)
 class Screens:
     """The wish to see the screens."""
 
-    survey: Path | None
-    by: str | None = None
-    demo: bool = False
-
-
-class Verb(Protocol):
-    """What the file of a verb offers."""
-
-    def add_arguments(self, parser: argparse.ArgumentParser) -> None:
-        """Declare what the verb takes."""
-
-    def run(self, args: argparse.Namespace) -> int | Screens:
-        """Do it."""
-
-
-class _Parser(argparse.ArgumentParser):
-    def error(self, message: str) -> NoReturn:
-        complain(f"{message}; see `{self.prog} --help`")
-        raise SystemExit(WRONG_INPUT)
+    def __init__(self, survey: Path | None, *, by: str | None = None, demo: bool = False) -> None:
+        self.survey, self.by, self.demo = survey, by, demo
 
 
 def complain(sentence: str) -> None:
@@ -111,8 +96,10 @@ def _dispatch(words: Sequence[str]) -> int | Screens:
 
 
 def _run_verb(name: str, words: Sequence[str]) -> int | Screens:
-    verb = cast(Verb, import_module(f"roughness.commands.{name}"))
-    parser = _Parser(prog=f"roughness {name}", description=verb.__doc__, allow_abbrev=False)
+    from roughness.commands.words import Parser, Verb
+
+    verb: Verb = import_module(f"roughness.commands.{name}")
+    parser = Parser(prog=f"roughness {name}", description=verb.__doc__, allow_abbrev=False)
     verb.add_arguments(parser)
     outcome = verb.run(parser.parse_args(words))
     sys.stdout.flush()
@@ -120,8 +107,12 @@ def _run_verb(name: str, words: Sequence[str]) -> int | Screens:
 
 
 def _open(words: Sequence[str]) -> int | Screens:
+    from pathlib import Path
+
+    from roughness.commands.words import Parser
+
     _refuse_mistyped_verb(words)
-    parser = _Parser(prog="roughness", allow_abbrev=False)
+    parser = Parser(prog="roughness", allow_abbrev=False)
     parser.add_argument("survey", nargs="?", type=Path)
     parser.add_argument("--by")
     args = parser.parse_args(words)
@@ -133,7 +124,7 @@ def _open(words: Sequence[str]) -> int | Screens:
 
 def _refuse_mistyped_verb(words: Sequence[str]) -> None:
     first = words[0] if words else "-"
-    if first.startswith("-") or "/" in first or "\0" in first or Path(first).exists():
+    if first.startswith("-") or "/" in first or "\0" in first or os.path.lexists(first):
         return
     from roughness.quantities.foreign_text import nearest
 

@@ -3,7 +3,7 @@
 import argparse
 from pathlib import Path
 
-from roughness.commands import DONE
+from roughness.commands import DONE, STANDS_STOPPED, complain
 from roughness.commands.arguments import add_json
 from roughness.commands.results import print_json, print_lines
 
@@ -20,6 +20,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Print all handbooks, or every row of one."""
     from roughness.commands import handbook_text as text
+    from roughness.errors import HandbookError
     from roughness.shelf.handbooks import handbook_keys, load_handbook
 
     folder = None
@@ -34,9 +35,15 @@ def run(args: argparse.Namespace) -> int:
         else:
             print_lines(text.handbook_lines(handbook))
         return DONE
-    handbooks = [load_handbook(key, folder) for key in handbook_keys(folder)]
+    handbooks, unusable = [], 0
+    for key in handbook_keys(folder):
+        try:
+            handbooks.append(load_handbook(key, folder))
+        except HandbookError as error:
+            complain(str(error))
+            unusable += 1
     if args.json:
         print_json([text.summary(handbook, folder) for handbook in handbooks])
     else:
         print_lines(text.summary_lines(handbooks, folder))
-    return DONE
+    return STANDS_STOPPED if unusable else DONE

@@ -82,10 +82,17 @@ def read_key(raw: bytes, where: str) -> str:
     Raises
     ------
     HandbookError
-        Where it is no TOML or has no key.
+        Where it has no key and, as a whole, is no TOML or has none.
     """
     refuse = refusal(printable(where))
-    key = _read_toml(raw, refuse).get("key")
+    # The key stands before the first table; the rest of the file is long.
+    head, _, _ = raw.partition(b"\n[")
+    try:
+        key = _read_toml(head, refuse).get("key")
+    except HandbookError:
+        key = None
+    if not isinstance(key, str):
+        key = _read_toml(raw, refuse).get("key")
     if not isinstance(key, str):
         raise refuse("key", "it is missing", 'such as key = "our-agency-2024"')
     return key
