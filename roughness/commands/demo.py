@@ -8,7 +8,7 @@ from roughness.commands import DONE, Screens
 from roughness.commands.results import print_lines
 
 USUAL_FOLDER = Path("roughness-demo")
-_INVENTED = "The demo survey is invented: there is no such river, and there are no such people."
+_INVENTED = "The demo survey is invented: no such stream, no such people."
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:

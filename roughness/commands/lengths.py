@@ -22,7 +22,8 @@ def show_length(value: float, unit: str, units: str | None) -> str:
     shown = _COUNTERPART[units][unit] if units else unit
     if shown == unit:
         return f"{show_value(value)} {unit}"
-    return f"{rounded(value * _METRES[unit] / _METRES[shown], _PLACES[shown])} {shown}"
+    converted = rounded(value * _METRES[unit] / _METRES[shown], _PLACES[shown])
+    return f"{show_value(float(converted))} {shown}"
 
 
 def show_stretch(reach: Reach, unit: str | None, units: str | None) -> str:

@@ -80,7 +80,7 @@ def _factors(row: Row, place: Place) -> Iterator[str]:
         return
     yield "  Factors:"
     lines = [_factor_cells(row, place, question) for question in answered]
-    aligned = table([cells for cells, _ in lines], give=(0, 1, 4), indent=4)
+    aligned = table([cells for cells, _ in lines], give=(0, 1, 5), indent=4)
     for line, (_, more) in zip(aligned, lines, strict=True):
         yield line
         for text in more:
@@ -95,7 +95,6 @@ def _factor_cells(row: Row, place: Place, question: Question) -> tuple[list[str]
     if entry and entry.low < entry.high:
         limits = f"{show_value(entry.low)} to {show_value(entry.high)}"
     grade = (entry.grade if entry else standing.choice.grade) or "own value"
-    said_by = f"{printable(standing.by)}, {standing.at[:10]}"
     more = [f"note: {standing.choice.note}"] if standing.choice.note else []
     if standing.carried_from:
         source = standing.carried_from
@@ -104,7 +103,8 @@ def _factor_cells(row: Row, place: Place, question: Question) -> tuple[list[str]
         )
     if standing.inherited_from:
         more.append(f"taken over from the flow condition {standing.inherited_from}")
-    cells = [question_in_words(question), printable(grade), value, limits, said_by]
+    said = [printable(standing.at[:10]), printable(standing.by)]
+    cells = [question_in_words(question), printable(grade), value, limits, *said]
     return cells, more
 
 
