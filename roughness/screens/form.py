@@ -96,7 +96,7 @@ class Form(ModalScreen[T | None], Generic[T]):
         empty = next((f for f in self._fields if not f.value and not f.choices), self._fields[0])
         self.query_one(f"#{empty.key}").focus()
 
-    def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
+    def check_action(self, action: str, _: tuple[object, ...]) -> bool | None:
         """Leave Enter to a field of many lines."""
         return action != "next" or not isinstance(self.focused, TextArea)
 

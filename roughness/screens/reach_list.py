@@ -74,9 +74,10 @@ class ReachList(ScrollView, can_focus=True):
 
     @dataclass
     class Moved(Message):
-        """The cursor came to another line."""
+        """The cursor came to another line, or its line changed."""
 
         line: SurveyLine | None
+        by_person: bool = False
 
     @dataclass
     class Clicked(Message):
@@ -164,7 +165,7 @@ class ReachList(ScrollView, can_focus=True):
             self._at = to
             self._keep_in_sight()
             self.refresh()
-            self.post_message(self.Moved(self.line))
+            self.post_message(self.Moved(self.line, by_person=True))
 
     def _keep_in_sight(self) -> None:
         top, fit = round(self.scroll_y), max(1, self.size.height - 1)
@@ -177,7 +178,7 @@ class ReachList(ScrollView, can_focus=True):
 
     def render_line(self, y: int) -> Strip:
         """Draw one line; the first one is the axis and does not scroll."""
-        width = self.size.width
+        width = self.scrollable_content_region.width
         columns = Columns.within(width)
         if y == 0:
             lead = " " * (columns.name + columns.part + 3)

@@ -1,6 +1,7 @@
 """The survey: its reaches with their n on one shared axis, and everything that adds to it."""
 
 import asyncio
+import gc
 from time import monotonic
 from typing import ClassVar, Final
 
@@ -26,6 +27,8 @@ from roughness.screens.reach_list import ReachList
 from roughness.screens.survey_lines import SurveyLine, SurveyLines
 
 _SLICE_S: Final = 0.008
+# Whoever moves about does not wait for reaches that are not on the screen.
+_HANDS_OFF_S: Final = 0.15
 _SHOW_EVERY_S: Final = 0.3
 _LOOK_EVERY_S: Final = 2.0
 _SMALL: Final = 60
@@ -68,6 +71,7 @@ class SurveyScreen(Screen[None]):
         self._weak_first = False
         self._progress = ""
         self._moved = False
+        self._pressed = 0.0
         self._watch = FileWatch(pen.survey)
         self._adding = Adding(self)
         self._others = ""
@@ -150,7 +154,8 @@ class SurveyScreen(Screen[None]):
 
     @on(ReachList.Moved)
     def _tell_detail(self, event: ReachList.Moved) -> None:
-        self._moved = self._moved or self.query_one(ReachList).has_focus
+        if event.by_person:
+            self._moved, self._pressed = True, monotonic()
         if event.line is not None and not event.line.read and not self._reading:
             self._read(self.query_one(ReachList).visible_reaches())
             return
@@ -185,6 +190,10 @@ class SurveyScreen(Screen[None]):
                     self.draw()
                     shown = monotonic()
                 await asyncio.sleep(0)
+                while not seen and monotonic() - self._pressed < _HANDS_OFF_S:
+                    await asyncio.sleep(_SLICE_S)
+            # The trails of thousands of reaches stay; collecting over them stalls the keys.
+            gc.freeze()
             found = await asyncio.to_thread(self.lines.found_over_survey, self.lines.rows())
             self.lines.take(found)
             last = await asyncio.to_thread(left_at, self.survey)

@@ -21,9 +21,9 @@ def title_line(survey: SurveyFolder, condition: str | None, width: int) -> Text:
     """Return the survey's name on the left and the flow condition on the right."""
     state = survey.state
     stream = state.described.stream
-    name = printable(
-        state.name if not stream or stream == state.name else f"{stream}: {state.name}"
-    )
+    name = printable(state.name)
+    if stream and stream.split()[0] not in state.name:
+        name = f"{printable(stream)}: {name}"
     told = f"{printable(condition)}" if condition else "no flow condition yet"
     several = len(state.conditions) > 1
     right = f"{told} (f: another)" if several else told
@@ -54,7 +54,11 @@ def detail_text(line: SurveyLine | None, lines: int, width: int) -> Text:
     if line is None:
         return Text("Nothing to show here. + adds a reach.")
     first = _number_sentence(line, width)
-    told = [first, *_finding_lines(line.row.findings, lines - 1, width)]
+    told = [first]
+    if line.row.adopted is not None:
+        reason = f"adopted because: {printable(line.row.adopted.reason)}"
+        told.append(fitted(reason, width).rstrip())
+    told += _finding_lines(line.row.findings, lines - len(told), width)
     return Text("\n".join(told), no_wrap=True)
 
 
@@ -64,16 +68,17 @@ def _number_sentence(line: SurveyLine, width: int) -> str:
         told = _what_to_do(line)
     else:
         n, spread = row.estimate.n, row.estimate.spread
-        told = f"n {show_n(n.best)}, {show_range(n)}; "
-        told += f"spread of the choices {show_n(spread.p16)} to {show_n(spread.p84)}"
+        told = f"n {show_n(n.best)}, {show_range(n)}"
         if row.adopted is not None:
-            reason = printable(row.adopted.reason)
-            told = f"adopted {show_n(row.adopted.n)} ({reason}); estimate {told}"
+            told = f"adopted {show_n(row.adopted.n)}; the estimate is {told}"
+        else:
+            told += f"; spread of the choices {show_n(spread.p16)} to {show_n(spread.p84)}"
     name = printable(row.reach.reach)
     name = f"{name}, {line.part_word}" if row.part else name
     # The names stand in the list too: the numbers are what must not be cut.
     room = max(12, width - cell_len(told) - 2)
-    return fitted(f"{fitted(name, min(room, cell_len(name)))}: {told}", width).rstrip()
+    name = fitted(name, min(room, cell_len(name))).replace(",… ", "…")
+    return fitted(f"{name}: {told}", width).rstrip()
 
 
 def _what_to_do(line: SurveyLine) -> str:
