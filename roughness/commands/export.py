@@ -35,6 +35,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Write the table; 1 where a ``stop`` finding stands in one of its rows."""
+    from roughness.commands.survey_faults import say_faults
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
     from roughness.exports.cautions import IN_ONE_LINE
@@ -52,7 +53,8 @@ def run(args: argparse.Namespace) -> int:
         print(f"{open_rows} of {len(found)} rows are not accepted", file=sys.stderr)
     _note_heads(survey, args.by)
     print(IN_ONE_LINE, file=sys.stderr)
-    return STANDS_STOPPED if any(row.stands_stopped for row in found) else DONE
+    broken = say_faults(survey)
+    return STANDS_STOPPED if broken or any(row.stands_stopped for row in found) else DONE
 
 
 def _note_heads(survey: "SurveyFolder", by: str | None) -> None:

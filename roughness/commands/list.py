@@ -18,6 +18,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Print the table; 1 where a ``stop`` finding stands."""
     from roughness.commands.documents import listed
+    from roughness.commands.survey_faults import say_faults
     from roughness.commands.survey_table import survey_lines
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
@@ -30,4 +31,5 @@ def run(args: argparse.Namespace) -> int:
     else:
         print_lines(survey_lines(survey, found, args.units))
         print(IN_ONE_LINE, file=sys.stderr)
-    return STANDS_STOPPED if any(row.stands_stopped for row in found) else DONE
+    broken = say_faults(survey)
+    return STANDS_STOPPED if broken or any(row.stands_stopped for row in found) else DONE

@@ -19,6 +19,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Print the reach; 1 where a ``stop`` finding stands."""
     from roughness.commands.reach_text import reach_document, reach_lines
+    from roughness.commands.survey_faults import say_faults
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
 
@@ -29,4 +30,5 @@ def run(args: argparse.Namespace) -> int:
         print_json(reach_document(survey, name, found, with_trail=args.trail))
     else:
         print_lines(reach_lines(survey, name, found, args.units, with_trail=args.trail))
-    return STANDS_STOPPED if any(row.stands_stopped for row in found) else DONE
+    broken = say_faults(survey)
+    return STANDS_STOPPED if broken or any(row.stands_stopped for row in found) else DONE

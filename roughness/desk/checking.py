@@ -38,11 +38,20 @@ class Checked:
 def check(survey: SurveyFolder) -> Checked:
     """Verify all trails, what ties them together, and the handbooks; writes nothing."""
     trails = list(_trails(survey))
-    faults = [fault for _, trail, _ in trails for fault in _of_trail(trail)]
+    faults = list(faults_of_survey(survey))
+    faults += [fault for noted, trail, _ in trails if noted for fault in _of_trail(trail)]
     faults += [fault for noted, trail, why in trails for fault in _tied(survey, noted, trail, why)]
     faults += _of_handbooks(survey)
     torn = tuple(trail.file for _, trail, _ in trails if trail.torn)
     return Checked(tuple(dict.fromkeys(faults)), torn, tuple(rows(survey)))
+
+
+def faults_of_survey(survey: SurveyFolder) -> tuple[Fault, ...]:
+    """Return what is wrong with the survey's own trail: then reaches may be missing."""
+    trail = survey.trail()
+    if not trail.lines and not trail.broken:
+        return (Fault(trail.file, 0, "it holds no whole line"),)
+    return tuple(_of_trail(trail))
 
 
 def _trails(survey: SurveyFolder) -> Iterator[tuple[NotedReach | None, Trail, str]]:
@@ -70,7 +79,7 @@ def _tied(
         yield from survey.state.unusable
         return
     if why:
-        yield Fault(trail.file, 0, why)
+        yield Fault(trail.file, 0, why.removeprefix(f"{trail.file} "))
         return
     if noted.first_line not in trail.by_hash:
         yield Fault(trail.file, 1, "it is not the trail that the survey began for this reach")

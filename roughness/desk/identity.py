@@ -27,7 +27,7 @@ def who(by: str | None = None) -> str:
     InputError
         Where nobody is known, or the name is none.
     """
-    name = by or os.environ.get(VARIABLE) or _memory().get("by")
+    name = (os.environ.get(VARIABLE) or _memory().get("by")) if by is None else by
     if not isinstance(name, str) or not name.strip():
         raise InputError(
             "nobody is named as the author", wanted=f"give --by NAME or set {VARIABLE}"

@@ -256,6 +256,7 @@ def test_a_list_that_is_not_utf_8_makes_no_survey(tmp_path: Path, refused: Refus
         ["--name", "a\u2066b"],
         ["--stream", "a\x00b"],
         ["--by", "a\nb"],
+        ["--by", ""],
         ["--handbook", "cowan"],
         ["--from", "no-such-file.csv"],
     ],

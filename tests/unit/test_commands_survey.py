@@ -313,6 +313,29 @@ def test_check_finds_a_changed_line_and_writes_nothing(
     assert {path: path.read_bytes() for path in survey.rglob("*") if path.is_file()} == before
 
 
+@pytest.mark.parametrize("raw", [b"", b"\xff\xfe", b"no line of a trail\n"])
+def test_a_survey_without_its_own_trail_is_never_taken_for_an_empty_one(
+    raw: bytes, survey: Path, tmp_path: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    (survey / "survey.jsonl").write_bytes(raw)
+    for words in (["list", str(survey)], ["export", str(survey), "-o", str(tmp_path / "n.json")]):
+        assert main(words) == 1
+        assert "reaches may be missing here: survey.jsonl" in capsys.readouterr().err
+    assert main(["check", str(survey), "--json"]) == 1
+    assert json.loads(capsys.readouterr().out)["intact"] is False
+    assert recorded(survey, tmp_path) == 2
+
+
+def test_a_reach_whose_file_is_gone_is_a_stop_and_not_intact(
+    survey: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    next((survey / "reaches").glob("willow*.jsonl")).unlink()
+    assert main(["list", str(survey)]) == 1
+    assert "Willow bend" in capsys.readouterr().out
+    assert main(["check", str(survey)]) == 1
+    assert ".jsonl: is not there" in capsys.readouterr().out
+
+
 def test_a_torn_tail_is_intact_and_the_next_writer_says_that_it_moved_it(
     survey: Path, tmp_path: Path, capsys: pytest.CaptureFixture[str]
 ) -> None:
@@ -373,3 +396,40 @@ def test_names_print_on_a_terminal_that_knows_ascii_alone(survey: Path, tmp_path
         )
         assert run.returncode == 0 and run.stdout.isascii()
         assert tree in run.stdout
+
+
+def test_record_reads_standard_input(survey: Path) -> None:
+    run = subprocess.run(
+        [sys.executable, "-m", "roughness", "record", str(survey), "Willow bend", "-"],
+        input=json.dumps(CHANNEL),
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    assert (run.returncode, run.stderr) == (0, "")
+    assert run.stdout.startswith("kept for Willow bend")
+
+
+@pytest.mark.skipif(os.name == "nt", reason="no pseudo terminals there")
+def test_new_asks_once_for_a_name_where_there_is_a_terminal(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    import pty
+
+    monkeypatch.delenv("ROUGHNESS_BY")
+    for folder, answer in (("first", b"Ann Reeve\n"), ("second", b"")):
+        ours, theirs = pty.openpty()
+        os.write(ours, answer)
+        run = subprocess.run(
+            [sys.executable, "-m", "roughness", "new", str(tmp_path / folder)],
+            stdin=theirs,
+            stderr=theirs,
+            stdout=subprocess.PIPE,
+            timeout=60,
+            check=False,
+        )
+        os.close(theirs)
+        os.close(ours)
+        assert run.returncode == 0
+        first = (tmp_path / folder / "survey.jsonl").read_bytes().splitlines()[0]
+        assert json.loads(first)["by"] == "Ann Reeve"
