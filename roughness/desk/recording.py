@@ -128,6 +128,10 @@ class Recorder:
 
     # -- a reach ------------------------------------------------------------------------
 
+    def describe_reach(self, reach: str, **words: Any) -> Line:
+        """Say something of a reach (reach_from, reach_to, slope, note); a later word counts."""
+        return self._say_of_reach(reach, "describe", words)
+
     def add_part(self, reach: str, part: Part) -> Line:
         """Add a part of the cross-section, or replace the one of that name."""
         checked_name(part.part, "name of the part")
