@@ -433,3 +433,20 @@ def test_new_asks_once_for_a_name_where_there_is_a_terminal(
         assert run.returncode == 0
         first = (tmp_path / folder / "survey.jsonl").read_bytes().splitlines()[0]
         assert json.loads(first)["by"] == "Ann Reeve"
+
+
+def test_show_marks_what_was_adopted_taken_over_and_carried(
+    tmp_path: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    from roughness.desk.making import copy_demo
+
+    copy_demo(tmp_path / "demo")
+    main(["show", str(tmp_path / "demo"), "Meadow bends"])
+    out = capsys.readouterr().out
+    flat = " ".join(out.split())
+    assert "Adopted: n 0.058, low 0.052, high 0.064. February flood" in flat
+    assert "taken over from the flow condition spring high flow" in flat
+    assert "carried over from Meadow bends, left flood plain, design flood; not confirmed" in flat
+    assert all(len(line) <= 80 for line in out.splitlines())
+    main(["show", str(tmp_path / "demo"), "Spring head"])
+    assert "no part of the cross-section was described yet" in capsys.readouterr().out
