@@ -130,7 +130,7 @@ class Recorder:
 
     def describe_reach(self, reach: str, **words: Any) -> Line:
         """Say something of a reach (reach_from, reach_to, slope, note); a later word counts."""
-        return self._say_of_reach(reach, "describe", words)
+        return self.say_of_reach(reach, "describe", words)
 
     def add_part(self, reach: str, part: Part) -> Line:
         """Add a part of the cross-section, or replace the one of that name."""
@@ -141,14 +141,14 @@ class Recorder:
                 f"the part goes from {show_value(limits[0])} m to {show_value(limits[1])} m",
                 wanted="distances from the left end of the section, the smaller one first",
             )
-        return self._say_of_reach(reach, "part", said(part))
+        return self.say_of_reach(reach, "part", said(part))
 
     def note_visit(self, reach: str, visit: Visit) -> Line:
         """Note who was there, when and in what state the reach was seen."""
         checked_name(visit.visit, "name of the visit")
         if visit.on is not None:
             _refuse_no_date(visit.on)
-        return self._say_of_reach(reach, "visit", said(visit))
+        return self.say_of_reach(reach, "visit", said(visit))
 
     def set_gate(self, reach: str, gate: Gate) -> Line:
         """Record what is asked once per part and condition, before the factors."""
@@ -163,7 +163,7 @@ class Recorder:
                 f"the shares of the wetted perimeter add to {show_value(sum(shares))} %",
                 wanted="two or more shares above 0 that add to 100",
             )
-        return self._say_of_reach(reach, "gate", said(gate))
+        return self.say_of_reach(reach, "gate", said(gate))
 
     def choose(
         self,
@@ -190,7 +190,7 @@ class Recorder:
         if carried_from is not None:
             data["carried_from"] = asdict(carried_from)
         self._keep_handbooks(place.asked_handbook, place.handbook.key)
-        return self._say_of_reach(place.reach.reach, "choose", data)
+        return self.say_of_reach(place.reach.reach, "choose", data)
 
     def record(self, reach: str, raw: bytes, where: str) -> tuple[Line, Estimate]:
         """Record a whole estimate from its JSON text, with its part and condition."""
@@ -217,7 +217,7 @@ class Recorder:
         body = {key: value for key, value in document.items() if key not in FILED_UNDER}
         data = filed | {"handbook_sha256": handbook.sha256, "estimate": body}
         self._keep_handbooks(judgement.handbook, handbook.key)
-        return self._say_of_reach(noted.reach, "estimate", data), estimate
+        return self.say_of_reach(noted.reach, "estimate", data), estimate
 
     def adopt(
         self,
@@ -243,13 +243,13 @@ class Recorder:
             raise InputError("the reason is empty", wanted="say why the estimate is not taken")
         data = {"part": place.part.part, "condition": place.condition.condition, "n": n}
         data |= _without_none({"low": low, "high": high, "reason": reason.strip()})
-        return self._say_of_reach(place.reach.reach, "adopt", data)
+        return self.say_of_reach(place.reach.reach, "adopt", data)
 
     def withdraw(self, reach: str | None, line: Line) -> Line:
         """Take a line back (None: one of the survey's own); it stays in the file."""
         if reach is None:
             return self._say_of_survey("withdraw", {"line": line.hash})
-        return self._say_of_reach(reach, "withdraw", {"line": line.hash})
+        return self.say_of_reach(reach, "withdraw", {"line": line.hash})
 
     # -- how it is written ----------------------------------------------------------------
 
@@ -266,7 +266,8 @@ class Recorder:
     def _say_of_survey(self, kind: str, data: Mapping[str, Any]) -> Line:
         return self._say(self.survey.path, self.survey.trail(), kind, data)
 
-    def _say_of_reach(self, reach: str, kind: str, data: Mapping[str, Any]) -> Line:
+    def say_of_reach(self, reach: str, kind: str, data: Mapping[str, Any]) -> Line:
+        """Write one line of a reach's trail; what it says was checked by who calls."""
         trail = self.survey.reach_trail(reach)
         return self._say(self.survey.reach_path(reach), trail, kind, data)
 
