@@ -14,8 +14,6 @@ from roughness.quantities.printing import enumerate_words, show_n
 from roughness.quantities.ranges import point
 from roughness.screens.form import Form
 from roughness.screens.menu import Confirm, Menu
-from roughness.screens.survey_forms import adopt_form
-from roughness.screens.survey_lines import SurveyLine
 from roughness.screens.walk_gate import GateForm
 from roughness.screens.walk_measured import has_measures, measured_dialog, sand_dialog
 from roughness.screens.walk_stack import names_of
@@ -299,6 +297,8 @@ class WalkDialogs:
 
     def adopt(self) -> None:
         """Ask for the n that goes to the model, and why."""
+        from roughness.screens.survey_forms import adopt_form
+        from roughness.screens.survey_lines import SurveyLine
 
         async def steps() -> None:
             place = self._course.place

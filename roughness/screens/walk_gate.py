@@ -3,6 +3,7 @@
 import re
 from collections.abc import Callable, Mapping, Sequence
 
+from textual import events
 from textual.widget import Widget
 from textual.widgets import Input
 
@@ -58,7 +59,7 @@ class GateForm(Form[bool]):
             set_gate(gate_from(place, typed))
             return True
 
-        self._shares_typed = bool(place.segments)
+        self._suggested = _USUAL_SHARES
         where = f"{printable(place.part.part)}, {printable(place.condition.condition)}"
         says = "Enter goes on; what is not known stays empty. ↓ reaches what was measured."
         super().__init__(
@@ -69,10 +70,12 @@ class GateForm(Form[bool]):
             does="to the factors",
         )
 
-    def on_mount(self) -> None:
-        """Start at the depth; show what is asked."""
-        self.query_one("#depth_m").focus()
+    def on_mount(self, event: events.Mount) -> None:
+        """Start at the depth, and not in the first empty field as other forms do."""
+        event.prevent_default()
         self._show_shares()
+        self.query_one("#depth_m").focus()
+        self.call_after_refresh(self.query_one("#depth_m", Input).action_select_all)
 
     def action_next(self) -> None:
         """Go on; the last question before the measured ones takes the form."""
@@ -92,12 +95,9 @@ class GateForm(Form[bool]):
 
     def on_input_changed(self, event: Input.Changed) -> None:
         """Suggest the shares from width and depth, as long as nobody typed them."""
-        if event.input.id == "shares":
-            self._shares_typed = True
-        elif event.input.id in ("depth_m", "width_m") and not self._shares_typed:
-            shares = self.query_one("#shares", Input)
-            with shares.prevent(Input.Changed):
-                shares.value = self._suggested_shares()
+        shares = self.query_one("#shares", Input)
+        if event.input.id in ("depth_m", "width_m") and shares.value == self._suggested:
+            shares.value = self._suggested = self._suggested_shares()
 
     def _show_shares(self) -> None:
         line = self.query_one("#shares").parent

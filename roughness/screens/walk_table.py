@@ -46,7 +46,8 @@ def table_lines(course: Course, width: int, height: int) -> list[Text]:
     water = any(row.water_cm is not None for row in rows)
     name = max(cell_len(_name(row.offer.grade)) for row in rows)
     told = suggestion(course)
-    lines = [_heading(told or _HOW, _verb(course), width, water)]
+    lines = [Text(f" {told}", style="bold")] if told else []
+    lines.append(_heading(_HOW, _verb(course), width, water))
     drawn: list[Text] = []
     cursor_line = 0
     for at, row in enumerate(rows):
@@ -55,7 +56,7 @@ def table_lines(course: Course, width: int, height: int) -> list[Text]:
         if at == course.cursor:
             cursor_line = len(drawn)
         drawn.append(_row(row, at, at == course.cursor, (name, width, water)))
-    return lines + _window(drawn, cursor_line, height - 1)
+    return lines + _window(drawn, cursor_line, height - len(lines))
 
 
 def _verb(course: Course) -> str:
