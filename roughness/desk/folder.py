@@ -12,6 +12,7 @@ from roughness.quantities.printing import enumerate_words
 from roughness.shelf.handbooks import handbook_for
 from roughness.survey.stream import Reach
 from roughness.survey.words import Setting
+from roughness.trail.conflicts import Conflict, conflicts
 from roughness.trail.data import NotedReach
 from roughness.trail.folding import fold_reach, fold_survey
 from roughness.trail.locking import SurveyLock
@@ -37,6 +38,10 @@ class _Seen:
     @cached_property
     def of_reach(self) -> ReachState:
         return fold_reach(self.trail)
+
+    @cached_property
+    def conflicts(self) -> tuple[Conflict, ...]:
+        return conflicts(self.trail)
 
     @cached_property
     def by_name(self) -> dict[str, NotedReach]:
@@ -133,6 +138,10 @@ class SurveyFolder:
             Where the file is not there or cannot be read.
         """
         return self._look(self.reach_path(name)).of_reach
+
+    def conflicts(self, name: str) -> tuple[Conflict, ...]:
+        """Return what people said apart in united copies of a reach's trail, not yet settled."""
+        return self._look(self.reach_path(name)).conflicts
 
     def reach(self, name: str) -> Reach:
         """Return a reach with its distances and slope: its own trail's word, else the survey's."""

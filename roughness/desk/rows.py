@@ -4,6 +4,7 @@ from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, replace
 
 from roughness.assessment.estimate import Estimate, FactorEstimate
+from roughness.desk.conflicting import conflict_findings
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place, Question, place_in
 from roughness.errors import RoughnessError
@@ -11,6 +12,7 @@ from roughness.findings import Estimated, Finding, find_over_survey
 from roughness.quantities.foreign_text import same_name_key
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.survey.words import FACTORS, Factor
+from roughness.trail.conflicts import Conflict
 from roughness.trail.lines import Line
 from roughness.trail.state import Adopted, PartState, ReachState
 
@@ -94,7 +96,15 @@ def rows_of_reach(survey: SurveyFolder, reach: str, order: int = 0) -> list[Row]
     ]
     found = found or [replace(bare, status=INCOMPLETE if state.visits else UNVISITED)]
     faults = list(_trail_findings(survey, reach, state))
-    return [replace(row, findings=(*faults, *row.findings)) for row in found]
+    apart = survey.conflicts(reach)
+    return [
+        replace(row, findings=(*faults, *_of_conflicts(row, apart), *row.findings)) for row in found
+    ]
+
+
+def _of_conflicts(row: Row, apart: tuple[Conflict, ...]) -> Iterator[Finding]:
+    if row.place is not None:
+        yield from conflict_findings(row.place, apart)
 
 
 def _unreadable(reach: Reach, order: int, why: str) -> Row:

@@ -8,6 +8,7 @@ from roughness.findings import (
     criteria,
     domain,
     double_counting,
+    merge_conflict,
     over_survey,
     ranges,
     setting_and_flow,
@@ -89,4 +90,4 @@ def find(facts: Facts) -> list[list[Finding]]:
 
 def rule_table() -> tuple[RuleInWords, ...]:
     """Return every rule's key, level, meaning and source: one estimate's, then a survey's."""
-    return (*RULES, *over_survey.RULES)
+    return (*RULES, *over_survey.RULES, merge_conflict.RULE)

@@ -15,7 +15,8 @@ _NEVER = datetime.min.replace(tzinfo=UTC)
 def in_order(lines: Sequence[Line]) -> tuple[Line, ...]:
     """Return each line after all lines it names; the file order does not matter.
 
-    Lines that do not see each other stand by their time and, within it, by their hash.
+    Lines that do not see each other stand by their time and, within it, by their hash; a
+    line never counts as earlier than what it comes after, whatever its clock said.
     """
     if all(line.prev == (before.hash,) for before, line in pairwise(lines)):
         return tuple(lines)
@@ -25,21 +26,19 @@ def in_order(lines: Sequence[Line]) -> tuple[Line, ...]:
     for line in known.values():
         for name in set(line.prev):
             followers.setdefault(name, []).append(line)
-    ready = [(*_rank(line), line) for line in known.values() if not missing[line.hash]]
+    told_at = {h: instant(line.at) or _NEVER for h, line in known.items()}
+    ready = [(told_at[h], h) for h in known if not missing[h]]
     heapq.heapify(ready)
     ordered = []
     while ready:
-        line = heapq.heappop(ready)[-1]
-        ordered.append(line)
-        for follower in followers.get(line.hash, ()):
+        at, name = heapq.heappop(ready)
+        ordered.append(known[name])
+        for follower in followers.get(name, ()):
+            told_at[follower.hash] = max(at, told_at[follower.hash])
             missing[follower.hash] -= 1
             if not missing[follower.hash]:
-                heapq.heappush(ready, (*_rank(follower), follower))
+                heapq.heappush(ready, (told_at[follower.hash], follower.hash))
     return tuple(ordered)
-
-
-def _rank(line: Line) -> tuple[datetime, str]:
-    return instant(line.at) or _NEVER, line.hash
 
 
 def withdrawn(ordered: Sequence[Line]) -> frozenset[str]:

@@ -46,6 +46,7 @@ KEYS = [
     "growth-differs",
     "made-by-record",
     "adopted-differs",
+    "merge-conflict",
 ]
 
 
