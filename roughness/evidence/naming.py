@@ -10,10 +10,10 @@ from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import enumerate_words
 
 EVIDENCE: Final = "evidence"
-PHOTO_ENDINGS: Final = ("jpg", "jpeg", "png", "webp", "tif", "tiff")
+PHOTO_ENDINGS: Final = ("jpg", "jpeg", "png", "webp")
 """Endings of files that must be a picture which can be shown here."""
 DOCUMENT_ENDINGS: Final = (
-    *("heic", "heif", "avif", "dng", "bmp", "gif"),
+    *("tif", "tiff", "heic", "heif", "avif", "dng", "bmp", "gif"),
     *("pdf", "txt", "md", "csv", "tsv", "json", "geojson", "gpx", "kml"),
     *("odt", "ods", "docx", "xlsx", "m4a", "mp3", "wav", "ogg", "mp4", "mov"),
 )

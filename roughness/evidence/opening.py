@@ -14,7 +14,8 @@ from roughness.errors import InputError
 from roughness.evidence.naming import name_as_it_came
 from roughness.evidence.sources import opened_source
 
-FORMATS: Final = ("JPEG", "PNG", "WEBP", "TIFF")
+# Not TIFF: its decoder writes what it dislikes of a file over whatever is on the screen.
+FORMATS: Final = ("JPEG", "PNG", "WEBP")
 NOT_AN_IMAGE: Final = "it is no picture of a kind that can be shown here"
 
 MOST_PIXELS: Final = 50_000_000
@@ -62,7 +63,7 @@ def opened_image(path: Path) -> Iterator[Image.Image]:
         except InputError:
             raise
         except UnidentifiedImageError:
-            raise InputError(NOT_AN_IMAGE, where=name, wanted="JPEG, PNG, WebP or TIFF") from None
+            raise InputError(NOT_AN_IMAGE, where=name, wanted="JPEG, PNG or WebP") from None
         except Image.DecompressionBombError:
             raise too_large(name, "more than 178 million") from None
         except _DAMAGED as error:

@@ -47,7 +47,7 @@ def thumbnail(path: Path, longest_side: int = 640) -> Thumbnail:
     Parameters
     ----------
     path : Path
-        JPEG, PNG, WebP or TIFF.
+        JPEG, PNG or WebP.
     longest_side : int
         In pixels; a smaller picture is not made larger.
 
@@ -72,7 +72,7 @@ def half_blocks(path: Path, columns: int, rows: int) -> tuple[tuple[Cells, ...],
     Parameters
     ----------
     path : Path
-        JPEG, PNG, WebP or TIFF.
+        JPEG, PNG or WebP.
     columns, rows : int
         The room there is, in cells.
 
