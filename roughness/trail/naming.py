@@ -21,7 +21,7 @@ def file_name_for(reach: str) -> str:
     """Return the file name of a reach, without its ending.
 
     >>> file_name_for("mill-weir"), file_name_for("Mill/Weir 2")
-    ('mill-weir', 'mill-weir-2-03abf7fd')
+    ('mill-weir', 'mill-weir-2-1a697aa7')
     """
     if _PLAIN.fullmatch(reach) and reach not in _DEVICES:
         return reach
