@@ -32,6 +32,7 @@ VERBS: dict[str, str] = {
     "adopt": "let another n than the estimate go to the model, with a reason",
     "estimate": "n, range, spread, findings and reasoning for one part",
     "check": "trails, handbooks and findings of a survey",
+    "merge": "unite a survey with another copy of it",
     "export": "the table of n for a model: .csv or .json",
     "tables": "handbooks and their rows",
     "schema": "the JSON Schema of an input or output",

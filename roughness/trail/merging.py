@@ -82,6 +82,11 @@ def file_bytes(lines: Iterable[Line]) -> bytes:
     return b"".join(line.raw + b"\n" for line in lines)
 
 
+def origin(trail: Trail) -> str:
+    """Return the hash of the first line, which tells one trail from another; "" for none."""
+    return trail.first.hash if trail.first else ""
+
+
 def authored(trail: Trail) -> frozenset[str]:
     """Return the hashes of the lines that uniting cannot drop."""
     known = trail.by_hash

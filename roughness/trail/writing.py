@@ -136,13 +136,13 @@ def _kept(
 ) -> Kept:
     raw = encoded(trail.heads, at, checked_name(by, "name of the author"), *said)
     if trail.torn:
-        _save_torn(path, trail, at)
+        save_torn(path, trail, at)
     _write(path, raw + b"\n", trail.size, is_new=not path.exists())
     after = read_trail(path, trail)
     return Kept(after.by_hash[hash_of(raw)], after, trail.torn, locked)
 
 
-def _save_torn(path: Path, trail: Trail, at: str) -> None:
+def save_torn(path: Path, trail: Trail, at: str) -> None:
     """Move the torn tail to its own file, first there, then away from here."""
     heading = f"# {printable(at)}: {len(trail.torn)} bytes from the end of {path.name}\n"
     beside = path.with_name(f"{path.name}.torn")
