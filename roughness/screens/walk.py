@@ -88,6 +88,7 @@ class WalkScreen(Screen[None]):
         self.survey, self.pen = survey, pen
         self.course = Course(survey, pen, reach, part, condition)
         self.dialogs = WalkDialogs(self)
+        self._said = ("", 0)
 
     def compose(self) -> ComposeResult:
         """Lay out where, what was chosen, what is asked, and n so far."""
@@ -109,6 +110,7 @@ class WalkScreen(Screen[None]):
 
     def on_resize(self) -> None:
         """Use the room there is."""
+        self.say()
         self.draw()
 
     # -- what is shown ----------------------------------------------------------------------
@@ -153,6 +155,9 @@ class WalkScreen(Screen[None]):
 
     def say(self, sentence: str = "") -> None:
         """Show one sentence until the next key."""
+        if (sentence, self.size.width) == self._said:
+            return
+        self._said = sentence, self.size.width
         message = self.query_one("#message", Static)
         message.update(Text(printable(sentence), style="bold") if sentence else self._rule())
 

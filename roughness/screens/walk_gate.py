@@ -12,8 +12,9 @@ from roughness.errors import InputError
 from roughness.quantities.foreign_text import checked_name, printable, same_name_key
 from roughness.quantities.measures import Quantity, read_known_measure
 from roughness.quantities.printing import rounded, show_value
-from roughness.screens.form import Field, Form
+from roughness.screens.form import Field
 from roughness.screens.pick import Pick
+from roughness.screens.walk_form import WalkForm
 from roughness.survey.choices import Measured
 from roughness.survey.stream import Visit
 from roughness.survey.words import Bank
@@ -39,7 +40,7 @@ _HINTS: dict[Quantity, str] = {
 _UNKNOWN, _ONE, _APART = "not known", "is enough", "no: bed and banks apart"
 
 
-class GateForm(Form[bool]):
+class GateForm(WalkForm):
     """Depth, bank, sand, one n or bed and banks apart; all of it may stay unknown.
 
     Parameters
@@ -70,12 +71,9 @@ class GateForm(Form[bool]):
             does="to the factors",
         )
 
-    def on_mount(self, event: events.Mount) -> None:
-        """Start at the depth, and not in the first empty field as other forms do."""
-        event.prevent_default()
+    def on_mount(self, event: events.Mount) -> None:  # type: ignore[override]  # noqa: ARG002
+        """Show what is asked."""
         self._show_shares()
-        self.query_one("#depth_m").focus()
-        self.call_after_refresh(self.query_one("#depth_m", Input).action_select_all)
 
     def action_next(self) -> None:
         """Go on; the last question before the measured ones takes the form."""

@@ -7,7 +7,8 @@ from typing import Final, get_args
 from roughness.desk.places import Place
 from roughness.quantities.measures import Quantity, read_known_measure
 from roughness.quantities.printing import show_value
-from roughness.screens.form import Field, Form
+from roughness.screens.form import Field
+from roughness.screens.walk_form import WalkForm
 from roughness.survey.choices import (
     BaseChoice,
     Choice,
@@ -49,7 +50,7 @@ def has_measures(factor: Factor) -> bool:
 
 def measured_dialog(
     place: Place, factor: Factor, known: Choice, typed: Callable[[Choice], object]
-) -> Form[bool]:
+) -> WalkForm:
     """Return the form of one factor; ``typed`` takes what was filled in.
 
     Parameters
@@ -68,7 +69,7 @@ def measured_dialog(
         typed(criteria_from(factor, values, known))
         return True
 
-    return Form(
+    return WalkForm(
         f"Measured or observed: {factor}",
         _fields(place, factor, known),
         keep,
@@ -78,7 +79,7 @@ def measured_dialog(
 
 def sand_dialog(
     place: Place, known: BaseChoice, keep: Callable[[BaseChoice, float | None, str], object]
-) -> Form[bool]:
+) -> WalkForm:
     """Return what is asked when sand is picked: regime, size, or a value of one's own.
 
     ``keep`` takes the criteria, one's own best value where one was typed, and the note.
@@ -103,7 +104,7 @@ def sand_dialog(
         ),
         Field(key=NOTE, label="Note", value=known.note or "", hint="why this value"),
     ]
-    return Form(
+    return WalkForm(
         "Sand: the flow shapes its bed, and with it n",
         fields,
         take,

@@ -6,7 +6,8 @@ from roughness.errors import InputError
 from roughness.quantities.measures import Quantity, read_measure
 from roughness.quantities.printing import show_value
 from roughness.quantities.ranges import Range
-from roughness.screens.form import Field, Form
+from roughness.screens.form import Field
+from roughness.screens.walk_form import WalkForm
 from roughness.survey.words import MULTIPLIER, Factor
 
 _WHAT_FOR = "Why this grade and value here: what somebody else needs to judge it."
@@ -14,7 +15,7 @@ _WHAT_FOR = "Why this grade and value here: what somebody else needs to judge it
 
 def values_dialog(
     factor: Factor, grade: str, now: Range | None, set_range: Callable[[Range], object]
-) -> Form[bool]:
+) -> WalkForm:
     """Return the form for the range of the highlighted grade.
 
     Parameters
@@ -38,7 +39,7 @@ def values_dialog(
         Field(key=key, label=key, value="" if now is None else show_value(getattr(now, key)))
         for key in ("low", "best", "high")
     ]
-    return Form(
+    return WalkForm(
         f"Value and range: {factor}, {grade}",
         fields,
         keep,
@@ -62,7 +63,7 @@ def range_from(values: Mapping[str, str], quantity: Quantity) -> Range:
 
 def note_dialog(
     title: str, now: str | None, keep_note: Callable[[str], object], why: str = ""
-) -> Form[bool]:
+) -> WalkForm:
     """Return the form for a note.
 
     Parameters
@@ -90,4 +91,4 @@ def note_dialog(
         value=now or "",
         hint="such as: seen on both banks, photo 12",
     )
-    return Form(title, [field], keep, says=why or _WHAT_FOR, does="keep the note")
+    return WalkForm(title, [field], keep, says=why or _WHAT_FOR, does="keep the note")
