@@ -121,6 +121,23 @@ def test_a_trail_cannot_name_a_file_outside_the_evidence(tmp_path: Path, file: s
     assert held(tmp_path, file, "0" * 64, 1) == "changed"
 
 
+def test_no_link_is_followed_from_a_trail(tmp_path: Path) -> None:
+    survey, source = tmp_path / "s", tmp_path / "a.txt"
+    survey.mkdir()
+    source.write_text("a")
+    kept = keep_copy(survey, source)
+    elsewhere = (survey / "evidence").rename(tmp_path / "elsewhere")
+    (survey / "evidence").symlink_to(elsewhere)
+    with pytest.raises(RecordError, match="is a link"):
+        stored_path(survey, kept.file)
+    assert held(survey, kept.file, kept.sha256, kept.size) == "changed"
+    (survey / "evidence").unlink()
+    (survey / "evidence").mkdir()
+    (survey / kept.file).symlink_to(source)
+    with pytest.raises(RecordError, match="is a link"):
+        stored_path(survey, kept.file)
+
+
 def test_evidence_that_went_or_changed_is_told_apart(tmp_path: Path) -> None:
     source = tmp_path / "a.txt"
     source.write_text("0.84 m")
@@ -360,10 +377,13 @@ def test_a_file_that_is_replaced_is_told_again_and_one_that_went_is_forgotten(
     path.write_text("another")
     watcher.look(3.0)
     assert names(watcher.look(5.0)) == ["a.jpg"]
-    path.unlink()
+    path.rename(tmp_path.parent / "aside.jpg")
     assert watcher.look(6.0) == ()
+    (tmp_path.parent / "aside.jpg").rename(path)
+    watcher.look(7.0)
+    assert names(watcher.look(9.0)) == ["a.jpg"]
     tmp_path.rename(tmp_path.with_name("gone"))
-    assert watcher.look(9.0) == ()
+    assert watcher.look(12.0) == ()
 
 
 def test_what_lay_there_before_may_be_passed_over(tmp_path: Path) -> None:
