@@ -22,6 +22,11 @@ MOST_PIXELS: Final = 50_000_000
 """A picture is unfolded whole before it is made small: 50 million pixels take 200 MB."""
 MOST_PIXELS_OF_JPEG: Final = 120_000_000
 """A JPEG is made small while it is unfolded."""
+MOST_PIXELS_TO_KEEP: Final = 400_000_000
+"""Beyond this a file is no photo but a trap, and not even its head is read."""
+
+# The library refuses twice this number, and warns from once of it on.
+Image.MAX_IMAGE_PIXELS = MOST_PIXELS_TO_KEEP // 2
 
 
 # What decoders raise on bytes that were made to hurt them; anything else is our own mistake.
@@ -65,7 +70,7 @@ def opened_image(path: Path) -> Iterator[Image.Image]:
         except UnidentifiedImageError:
             raise InputError(NOT_AN_IMAGE, where=name, wanted="JPEG, PNG or WebP") from None
         except Image.DecompressionBombError:
-            raise too_large(name, "more than 178 million") from None
+            raise _too_many(name, "far too many pixels", MOST_PIXELS_TO_KEEP) from None
         except _DAMAGED as error:
             why = str(error).split("\n", 1)[0][:80] or type(error).__name__
             raise InputError(
@@ -86,13 +91,10 @@ def refuse_too_large(image: Image.Image, name: str) -> None:
     most = MOST_PIXELS_OF_JPEG if image.format in ("JPEG", "MPO") else MOST_PIXELS
     pixels = image.width * image.height
     if pixels > most:
-        raise too_large(name, f"{pixels / 1e6:.0f} million", most)
+        raise _too_many(name, f"{pixels / 1e6:.1f} million pixels and is not shown", most)
 
 
-def too_large(name: str, pixels: str, most: int = MOST_PIXELS_OF_JPEG) -> InputError:
-    """Return the sentence about a picture with too many pixels."""
+def _too_many(name: str, pixels: str, most: int) -> InputError:
     return InputError(
-        f"the picture has {pixels} pixels and is not shown",
-        where=name,
-        wanted=f"at most {most // 1_000_000} million",
+        f"the picture has {pixels}", where=name, wanted=f"at most {most // 1_000_000} million"
     )
