@@ -51,6 +51,8 @@ class DescribeSurvey:
     grows: Literal["upstream", "downstream"] | None = None
     """Where the distances along the stream grow to."""
     note: str | None = None
+    same_person_may_accept: bool | None = None
+    """Whether the one who estimated may also accept; every report then says so."""
 
 
 @dataclass(frozen=True, kw_only=True)

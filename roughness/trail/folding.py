@@ -21,6 +21,7 @@ from roughness.trail.lines import Line
 from roughness.trail.ordering import in_order, withdrawn
 from roughness.trail.places import PLACE_KINDS, PlaceBeingTold
 from roughness.trail.reading import Fault, Trail
+from roughness.trail.reviews import ReviewsBeingTold
 from roughness.trail.state import ReachState, SurveyState
 
 
@@ -45,8 +46,10 @@ def fold_reach(trail: Trail) -> ReachState:
     parts: dict[str, Part] = {}
     visits: dict[str, Visit] = {}
     places: dict[tuple[str, str], PlaceBeingTold] = {}
+    reviews = ReviewsBeingTold()
     last = None
     for line, data in lines.told:
+        reviews.tell(line, data)
         if line.kind in PLACE_KINDS:
             last = same_name_key(data.part), same_name_key(data.condition)
             place = places.setdefault(last, PlaceBeingTold(data.part, data.condition))
@@ -67,6 +70,8 @@ def fold_reach(trail: Trail) -> ReachState:
         parts=tuple(parts.values()),
         visits=tuple(visits.values()),
         places={key: place.state() for key, place in places.items()},
+        reviews=reviews.states(trail.by_hash),
+        evidence=reviews.evidence,
         last_touched=(places[last].part, places[last].condition) if last else None,
         effective=lines.effective,
         withdrawn=lines.gone,

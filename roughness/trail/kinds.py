@@ -12,6 +12,7 @@ from roughness.errors import InputError
 from roughness.quantities.foreign_text import printable
 from roughness.survey.stream import FlowCondition, Part, Visit
 from roughness.trail import data as said
+from roughness.trail import review_data as review
 
 KINDS_OF_SURVEY: Final[dict[str, tuple[type, ...]]] = {
     "begin": (said.BeginSurvey,),
@@ -21,6 +22,7 @@ KINDS_OF_SURVEY: Final[dict[str, tuple[type, ...]]] = {
     "order": (said.Order,),
     "heads": (said.Heads,),
     "withdraw": (said.Withdraw,),
+    "merge": (review.Merge,),
 }
 KINDS_OF_REACH: Final[dict[str, tuple[type, ...]]] = {
     "begin": (said.BeginReach,),
@@ -37,7 +39,16 @@ KINDS_OF_REACH: Final[dict[str, tuple[type, ...]]] = {
     ),
     "estimate": (said.Estimated,),
     "adopt": (said.Adopt,),
+    "question": (review.Question,),
+    "answer": (review.Answer,),
+    "finding-answered": (review.FindingAnswered,),
+    "accept": (review.Accept,),
+    "return": (review.Return,),
+    "opinion": (review.Opinion,),
+    "consensus": (review.Consensus,),
+    "evidence": (review.Evidence,),
     "withdraw": (said.Withdraw,),
+    "merge": (review.Merge,),
 }
 _CHOOSE_BY_FACTOR: Final[dict[str, type]] = {
     "base": said.ChooseBase,
@@ -109,7 +120,7 @@ def trail_schema() -> dict[str, Any]:
                 ("reaches/NAME.jsonl", KINDS_OF_REACH),
             )
             for kind, types in kinds.items()
-            if not (where.startswith("reaches") and kind == "withdraw")
+            if not (where.startswith("reaches") and kind in _IN_BOTH)
         ]
         + [
             _line_schema(
@@ -122,6 +133,8 @@ def trail_schema() -> dict[str, Any]:
     }
 
 
+# The same in the survey's trail and in a reach's: published once.
+_IN_BOTH = ("withdraw", "merge")
 _UNKNOWN_KEY = ("extra_forbidden", "unexpected_keyword_argument")
 
 

@@ -1,7 +1,7 @@
 """The graph of a trail: its lines in order, and which of them still have an effect."""
 
 import heapq
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
 from datetime import UTC, datetime
 from itertools import pairwise
@@ -26,19 +26,21 @@ def in_order(lines: Sequence[Line]) -> tuple[Line, ...]:
     for line in known.values():
         for name in set(line.prev):
             followers.setdefault(name, []).append(line)
-    told_at = {h: instant(line.at) or _NEVER for h, line in known.items()}
-    ready = [(told_at[h], h) for h in known if not missing[h]]
+    ready = [(*_rank(line), line) for line in known.values() if not missing[line.hash]]
     heapq.heapify(ready)
     ordered = []
     while ready:
-        at, name = heapq.heappop(ready)
-        ordered.append(known[name])
-        for follower in followers.get(name, ()):
-            told_at[follower.hash] = max(at, told_at[follower.hash])
+        line = heapq.heappop(ready)[-1]
+        ordered.append(line)
+        for follower in followers.get(line.hash, ()):
             missing[follower.hash] -= 1
             if not missing[follower.hash]:
-                heapq.heappush(ready, (told_at[follower.hash], follower.hash))
+                heapq.heappush(ready, (*_rank(follower), follower))
     return tuple(ordered)
+
+
+def _rank(line: Line) -> tuple[datetime, str]:
+    return instant(line.at) or _NEVER, line.hash
 
 
 def withdrawn(ordered: Sequence[Line]) -> frozenset[str]:
@@ -59,14 +61,26 @@ def withdrawn(ordered: Sequence[Line]) -> frozenset[str]:
     return frozenset(gone)
 
 
-def up_to(trail: Trail, heads: Iterable[str]) -> Trail:
-    """Return the trail as it was when ``heads`` were its last lines."""
-    wanted, todo = set[str](), [name for name in heads if name in trail.by_hash]
+def comes_after(known: Mapping[str, Line], line: Line, earlier: Line) -> bool:
+    """Return whether the author of ``line`` had ``earlier`` before them; no clock is asked."""
+    return earlier.hash in before(known, line.prev)
+
+
+def before(known: Mapping[str, Line], heads: Iterable[str]) -> frozenset[str]:
+    """Return the hashes of ``heads`` and of everything they come after, as far as known."""
+    seen, todo = set[str](), [name for name in heads if name in known]
     while todo:
         name = todo.pop()
-        if name not in wanted:
-            wanted.add(name)
-            todo += [p for p in trail.by_hash[name].prev if p in trail.by_hash]
+        if name not in seen:
+            seen.add(name)
+            todo += [p for p in known[name].prev if p in known]
+    return frozenset(seen)
+
+
+def up_to(trail: Trail, heads: Iterable[str]) -> Trail:
+    """Return the trail as it was when ``heads`` were its last lines."""
+    heads = tuple(heads)
+    wanted = before(trail.by_hash, heads)
     lines = tuple(line for line in trail.lines if line.hash in wanted)
     return replace(
         trail,

@@ -7,9 +7,10 @@ from roughness.survey.choices import Factors, Measured
 from roughness.survey.words import Factor, Setting, Shape
 from roughness.trail.data import Adopt, Choose, Estimated, Gate, SegmentShare
 from roughness.trail.lines import Line
+from roughness.trail.review_data import Consensus
 from roughness.trail.state import Adopted, Chosen, PartState
 
-PLACE_KINDS: Final = frozenset({"gate", "choose", "estimate", "adopt"})
+PLACE_KINDS: Final = frozenset({"gate", "choose", "estimate", "consensus", "adopt"})
 
 
 class PlaceBeingTold:
@@ -31,13 +32,13 @@ class PlaceBeingTold:
         self._last: Line | None = None
 
     def tell(self, line: Line, data: Any) -> None:
-        """Take in one more line: a gate, a choice, an estimate or an adopted value."""
+        """Take in one more line: a gate, choice, estimate, consensus, adopted value."""
         self._last = line
         if isinstance(data, Gate):
             self._tell_gate(line, data)
         elif isinstance(data, Choose):
             self._tell_choice(line, data)
-        elif isinstance(data, Estimated):
+        elif isinstance(data, Estimated | Consensus):
             self._tell_estimate(line, data)
         elif isinstance(data, Adopt):
             self._adopted = Adopted(
@@ -61,10 +62,12 @@ class PlaceBeingTold:
             line=line,
         )
 
-    def _tell_estimate(self, line: Line, data: Estimated) -> None:
+    def _tell_estimate(self, line: Line, data: Estimated | Consensus) -> None:
         estimate = data.estimate
         self._handbook, self._setting = estimate.handbook, estimate.setting
-        self._measured, self._visit = estimate.measured, data.visit or self._visit
+        self._measured = estimate.measured
+        if isinstance(data, Estimated):
+            self._visit = data.visit or self._visit
         self._shape, self._dependence = estimate.shape, estimate.dependence
         self._segments = None
         told: dict[str, Factors] = {"": estimate.factors} if estimate.factors else {}

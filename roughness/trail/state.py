@@ -10,6 +10,7 @@ from roughness.survey.words import Factor, Setting, Shape
 from roughness.trail.data import CarriedFrom, DescribeSurvey, Gate, Heads, NotedReach, SegmentShare
 from roughness.trail.lines import Line
 from roughness.trail.reading import Fault
+from roughness.trail.review_state import NOT_REVIEWED, Filed, ReviewState
 
 Segments = Mapping[str | None, Mapping[Factor, "Chosen"]]
 
@@ -118,6 +119,10 @@ class ReachState:
     visits: tuple[Visit, ...] = ()
     places: Mapping[tuple[str, str], PartState] = field(default_factory=dict)
     """By (part, condition), both as :func:`same_name_key` gives them, in order of appearance."""
+    reviews: Mapping[tuple[str, str], ReviewState] = field(default_factory=dict)
+    """By (part, condition), as the places."""
+    evidence: tuple[Filed, ...] = ()
+    """Photos and documents, each as the last line about it says."""
     last_touched: tuple[str, str] | None = None
     """Part and condition of the last line about any: where to come back to."""
     effective: tuple[Line, ...] = ()
@@ -132,6 +137,11 @@ class ReachState:
     def place(self, part: str, condition: str) -> PartState | None:
         """Return the state of a part under a condition, names compared as people would."""
         return self.places.get((same_name_key(part), same_name_key(condition)))
+
+    def review(self, part: str, condition: str) -> ReviewState:
+        """Return the review of a part under a condition; an empty one where nobody reviewed."""
+        key = same_name_key(part), same_name_key(condition)
+        return self.reviews.get(key, NOT_REVIEWED)
 
 
 @dataclass(frozen=True, kw_only=True)

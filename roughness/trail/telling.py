@@ -9,8 +9,8 @@ from roughness.trail.lines import Line
 from roughness.trail.state import ReachState, SurveyState
 
 # Taking these back would not undo what a person did: the begin of the trail, a note of
-# heads, and a withdrawal (which is undone by withdrawing it by name).
-_NOT_BY_UNDO: Final = frozenset({"begin", "heads", "withdraw"})
+# heads, a merge, and a withdrawal (which is undone by withdrawing it by name).
+_NOT_BY_UNDO: Final = frozenset({"begin", "heads", "withdraw", "merge"})
 
 
 def withdrawable(state: ReachState | SurveyState, by: str) -> Line | None:
@@ -99,6 +99,35 @@ def _names(names: Sequence[str]) -> str:
     return f"{', '.join(names)} told apart"
 
 
+def _tell_question(data: Mapping[str, Any]) -> str:
+    factor = f"{data['factor']} of " if data.get("factor") else ""
+    again = "asked again" if data.get("follows") else "asked"
+    return f"{again} about {factor}{_place(data)}: {data['text']}"
+
+
+def _tell_finding_answered(data: Mapping[str, Any]) -> str:
+    return f"answered the finding {data['rule']} of {_place(data)}: {data['text']}"
+
+
+def _tell_accept(data: Mapping[str, Any]) -> str:
+    n = data["n"]
+    told = f"accepted {_place(data)} with n {show_n(n['best'])}"
+    told += f" ({show_n(n['low'])} to {show_n(n['high'])})"
+    told += f", overruling what stood against it: {data['overruled']}" if data["overruled"] else ""
+    return told + (", as the one who estimated it" if data["same_person"] else "")
+
+
+def _tell_consensus(data: Mapping[str, Any]) -> str:
+    what = _tell_estimate(data).removeprefix("estimate of ")
+    return f"consensus on {what}; because {data['reason']}"
+
+
+def _tell_evidence(data: Mapping[str, Any]) -> str:
+    told = f"evidence {data['name']}"
+    told += f", {data['caption']}" if data.get("caption") else ""
+    return told + (f" (for {', '.join(data['factors'])})" if data.get("factors") else "")
+
+
 def _tell_unknown(data: Mapping[str, Any]) -> str:
     return f"a line of a kind that this version does not know ({len(data)} entries)"
 
@@ -117,4 +146,13 @@ _TELL: Final[dict[str, Callable[[Mapping[str, Any]], str]]] = {
     "choose": _tell_choose,
     "estimate": _tell_estimate,
     "adopt": _tell_adopt,
+    "question": _tell_question,
+    "answer": lambda data: f"answered: {data['text']}",
+    "finding-answered": _tell_finding_answered,
+    "accept": lambda data: _tell_accept({"overruled": None, "same_person": None} | dict(data)),
+    "return": lambda data: f"returned {_place(data)}: {data['reason']}",
+    "opinion": lambda data: f"second {_tell_estimate(data)}",
+    "consensus": _tell_consensus,
+    "evidence": _tell_evidence,
+    "merge": lambda _data: "two ways of this trail united",
 }
