@@ -86,14 +86,14 @@ def copies(draw: st.DrawFn, most: int = 14) -> list[Copy]:
     folders = [Copy(first) for _ in range(3)]
     for _ in range(draw(st.integers(0, most))):
         mine = draw(st.integers(0, 2))
-        does = draw(st.sampled_from(["write", "write", "write", "meet", "note"]))
+        does = draw(st.sampled_from(["write"] * 3 + ["meet", "note", "meet and note"]))
         if does == "write":
             trail, by = folders[mine].trail, ["Ann", "Bo", "Cy"][mine]
             trail = written(trail, draw(moments), by, *draw(said(trail)))
             folders[mine] = Copy(trail, folders[mine].noted)
-        elif does == "meet":
+        if "meet" in does:
             folders[mine] = folders[mine].met(folders[draw(st.integers(0, 2))])
-        else:
+        if "note" in does:
             noted = folders[mine].noted | set(folders[mine].trail.heads)
             folders[mine] = Copy(folders[mine].trail, noted)
     return folders
@@ -144,6 +144,17 @@ def test_no_authored_line_and_no_noted_line_is_lost_or_changed(folders: list[Cop
                 assert raws[line.hash] == line.raw
             else:
                 assert (line.kind, line.by, dict(line.data)) == ("merge", "merge", {})
+
+
+@given(copies())
+def test_an_end_that_was_noted_outside_stays_whatever_meets_later(folders: list[Copy]) -> None:
+    a, b, c = folders
+    met = a.met(b)
+    noted = Copy(met.trail, met.noted | set(met.trail.heads))
+    for later in (noted.met(c), c.met(noted), noted.met(b).met(c)):
+        assert later.noted >= set(met.trail.heads)
+        assert later.trail.by_hash.keys() >= set(met.trail.heads)
+    assert noted.met(b).met(c).content == noted.met(c.met(b)).content == c.met(noted).content
 
 
 @given(copies())
