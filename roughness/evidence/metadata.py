@@ -12,6 +12,8 @@ from datetime import datetime
 from pathlib import Path
 from typing import Any, Final
 
+from PIL import Image
+
 from roughness.errors import InputError
 from roughness.evidence.opening import NOT_AN_IMAGE, opened_image
 
@@ -48,7 +50,7 @@ def read_metadata(path: Path) -> Told | None:
     """
     try:
         with opened_image(path) as image:
-            exif = image.getexif()
+            exif = _exif(image)
             return Told(
                 taken_at=_taken_at(exif.get_ifd(_EXIF_IFD)),
                 position=_position(exif.get_ifd(_GPS_IFD)),
@@ -59,6 +61,17 @@ def read_metadata(path: Path) -> Told | None:
         if error.what == NOT_AN_IMAGE:
             return None
         raise
+
+
+def _exif(image: Image.Image) -> Image.Exif:
+    """Return the metadata at the head of the file, if there is any.
+
+    A PNG may also carry it behind the picture; the library would unfold all of that to get
+    there, so it is not looked for.
+    """
+    if image.format == "PNG" and "exif" not in image.info:
+        return Image.Exif()
+    return image.getexif()
 
 
 def _taken_at(tags: Mapping[int, Any]) -> str | None:
