@@ -29,6 +29,7 @@ VERBS: dict[str, str] = {
     "list": "reaches with n, range, status and open findings",
     "show": "one reach's reasoning, as text",
     "record": "put an estimate into a reach's trail",
+    "attach": "copy photos or documents of a reach into the survey",
     "adopt": "let another n than the estimate go to the model, with a reason",
     "estimate": "n, range, spread, findings and reasoning for one part",
     "check": "trails, handbooks and findings of a survey",

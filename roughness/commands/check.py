@@ -1,4 +1,4 @@
-"""Whether trails, handbooks and findings of a survey hold; writes nothing."""
+"""Whether trails, handbooks, evidence and findings of a survey hold; writes nothing."""
 
 import argparse
 import sys
@@ -31,6 +31,11 @@ def run(args: argparse.Namespace) -> int:
     for file in checked.torn:
         print(
             f"{printable(file)}: the last line was cut off; the next writer moves the rest aside",
+            file=sys.stderr,
+        )
+    for file in checked.unlisted:
+        print(
+            f"{printable(file)}: no reach names it; attach it, or move it out of the folder",
             file=sys.stderr,
         )
     if args.json:

@@ -1,8 +1,9 @@
-"""Whether a survey hangs together: trails, noted heads, handbooks, findings."""
+"""Whether a survey hangs together: trails, noted heads, handbooks, evidence, findings."""
 
 from collections.abc import Iterator
 from dataclasses import dataclass
 
+from roughness.desk.evidence_lists import evidence_faults, unlisted_evidence
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.rows import Row, rows
 from roughness.errors import RoughnessError
@@ -23,6 +24,8 @@ class Checked:
     torn: tuple[str, ...]
     """Files whose last line was cut off; the next writer moves the rest aside."""
     rows: tuple[Row, ...]
+    unlisted: tuple[str, ...] = ()
+    """Files in the evidence folder that no trail names."""
 
     @property
     def intact(self) -> bool:
@@ -36,14 +39,16 @@ class Checked:
 
 
 def check(survey: SurveyFolder) -> Checked:
-    """Verify all trails, what ties them together, and the handbooks; writes nothing."""
+    """Verify all trails, what ties them together, handbooks and evidence; writes nothing."""
     trails = list(_trails(survey))
     faults = list(faults_of_survey(survey))
     faults += [fault for noted, trail, _ in trails if noted for fault in _of_trail(trail)]
     faults += [fault for noted, trail, why in trails for fault in _tied(survey, noted, trail, why)]
     faults += _of_handbooks(survey)
+    faults += evidence_faults(survey)
     torn = tuple(trail.file for _, trail, _ in trails if trail.torn)
-    return Checked(tuple(dict.fromkeys(faults)), torn, tuple(rows(survey)))
+    found = tuple(dict.fromkeys(faults))
+    return Checked(found, torn, tuple(rows(survey)), unlisted_evidence(survey))
 
 
 def faults_of_survey(survey: SurveyFolder) -> tuple[Fault, ...]:
