@@ -4,7 +4,6 @@ from collections.abc import Callable
 from typing import ClassVar
 
 from rich.text import Text
-from textual import events
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.screen import Screen
@@ -79,6 +78,7 @@ class WalkScreen(Screen[None]):
         Binding("down", "move(1)", show=False),
         Binding("pageup", "page(-1)", show=False),
         Binding("pagedown", "page(1)", show=False),
+        *(Binding(str(digit), f"digit({digit})", show=False) for digit in range(10)),
     ]
 
     def __init__(
@@ -210,18 +210,20 @@ class WalkScreen(Screen[None]):
             return self.at_end
         return not (self.at_end and action in _AT_A_FACTOR)
 
-    def on_key(self, event: events.Key) -> None:
-        """Clear the last message; a digit takes a grade."""
+    def on_key(self) -> None:
+        """Clear the last message."""
         self.say()
-        if event.key.isdecimal() and not self.at_end:
-            event.stop()
-            rows = self.course.rows()
-            row = int(event.key) - 1
-            if 0 <= row < len(rows):
-                self.course.move_to(row)
-                self.action_take()
-            else:
-                self.say(f"There is no grade {event.key} here.")
+
+    def action_digit(self, digit: int) -> None:
+        """Take a grade by its number.
+
+        A binding like the other keys, so that fast typing keeps their order.
+        """
+        if 1 <= digit <= len(self.course.rows()):
+            self.course.move_to(digit - 1)
+            self.action_take()
+        else:
+            self.say(f"There is no grade {digit} here.")
 
     def action_take(self) -> None:
         """Keep the marked grade and go on."""

@@ -16,3 +16,12 @@ class WalkForm(Form[bool]):
         first.focus()
         if isinstance(first, Input):
             self.call_after_refresh(first.action_select_all)
+
+    def action_next(self) -> None:
+        """Go on, behind the keys that still wait for the field: Enter overtakes what was typed."""
+        if self.focused is not None:
+            self.focused.call_later(self.go_on)
+
+    def go_on(self) -> None:
+        """Go to the next field, or take the form from its last one."""
+        super().action_next()

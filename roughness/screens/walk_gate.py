@@ -75,13 +75,13 @@ class GateForm(WalkForm):
         """Show what is asked."""
         self._show_shares()
 
-    def action_next(self) -> None:
+    def go_on(self) -> None:
         """Go on; the last question before the measured ones takes the form."""
         last = "shares" if self._apart else "apart"
         if self.focused is not None and self.focused.id == last:
             self._submit()
         else:
-            super().action_next()
+            super().go_on()
 
     @property
     def _apart(self) -> bool:

@@ -1,6 +1,7 @@
 """Walking a part: gate, factors, summary, and what is kept on the way."""
 
 import pytest
+from textual import events
 from textual.widgets import Input
 
 BOTH_SIZES = pytest.mark.parametrize("size", [(80, 24), (120, 40)])
@@ -45,6 +46,28 @@ async def test_the_whole_gate_can_be_skipped_with_enter(open_walk):
         assert someone.place.state.gate.depth_m is None
         assert "1 of 6" in someone.text
         assert "water" not in someone.text.splitlines()[8]
+
+
+async def test_what_is_typed_faster_than_it_is_shown_is_not_lost(open_walk):
+    async with open_walk() as someone:
+        for key, sign in (("1", "1"), ("full_stop", "."), ("4", "4"), *[("enter", "\r")] * 4):
+            someone.app.post_message(events.Key(key, sign))
+        await someone.pilot.pause()
+        await someone.pilot.pause()
+        assert someone.place.depth_m == 1.4
+
+
+async def test_keys_typed_faster_than_they_are_shown_keep_their_order(open_walk):
+    async with open_walk() as someone:
+        await someone.gate()
+        fast = (("6", "6"), ("3", "3"), ("backspace", None), ("2", "2"), ("1", "1"))
+        for key, sign in fast:
+            someone.app.post_message(events.Key(key, sign))
+        await someone.pilot.pause()
+        await someone.pilot.pause()
+        assert someone.grade("base") == "cobble"
+        assert someone.grade("irregularity") == "minor"
+        assert someone.grade("variation") == "gradual"
 
 
 async def test_enter_takes_no_grade_that_nobody_marked(open_walk):
