@@ -38,7 +38,8 @@ class RoughnessApp(App[None]):
     def __init__(
         self, folder: Path | None = None, by: str | None = None, *, demo: bool = False
     ) -> None:
-        super().__init__()
+        # Said before the theme is: NO_COLOR leaves out colours then, and not the text.
+        super().__init__(ansi_color=True)
         self.theme = _LIGHT if _is_light(os.environ.get("COLORFGBG", "")) else _DARK
         self._start = StartScreen(folder, by, demo=demo)
         self.last_words = ""

@@ -11,7 +11,8 @@ from typing import Final
 from roughness.quantities.ranges import Range
 
 LOWEST, HIGHEST = 0.01, 0.3
-_TICKS: Final = (0.02, 0.03, 0.05, 0.07, 0.10, 0.15, 0.20)
+# Where there is no room for all of them, the first ones stay.
+_TICKS: Final = (0.10, 0.02, 0.05, 0.20, 0.03, 0.07, 0.15)
 THIN, THICK, BEST, ADOPTED = "─", "━", "█", "◆"
 _FROM, _TO, _BELOW, _ABOVE, _PEOPLE = "├", "┤", "◂", "▸", "·"
 
@@ -27,15 +28,19 @@ def column(n: float, width: int) -> int:
 def axis(width: int) -> str:
     """Return the labels of the axis; one without room is moved by a column or left out."""
     cells = [" "] * width
-    free_from = 0
     for tick in _TICKS:
-        label = f"{tick:.2f}"[1:]
-        start = column(tick, width) - 1
-        start += start + 1 == free_from
-        if start >= free_from and start + len(label) <= width:
-            cells[start : start + len(label)] = label
-            free_from = start + len(label) + 1
+        label = f" {tick:.2f} ".replace(" 0", " ")
+        start = column(tick, width) - 2
+        for moved in (start, start + 1, start - 1):
+            if _is_free(cells, moved, len(label)):
+                cells[moved + 1 : moved + len(label) - 1] = label.strip()
+                break
     return "".join(cells)
+
+
+def _is_free(cells: list[str], start: int, length: int) -> bool:
+    inside = start >= 0 and start + length - 1 <= len(cells)
+    return inside and not "".join(cells[start : start + length]).strip()
 
 
 def bar(

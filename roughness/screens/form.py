@@ -1,10 +1,12 @@
 """A dialog with a few fields. What does not fit is said; nothing typed is lost."""
 
+import asyncio
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from typing import ClassVar, Generic, TypeVar
 
 from rich.text import Text
+from textual import work
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.containers import Horizontal, Vertical, VerticalScroll
@@ -52,6 +54,8 @@ class Form(ModalScreen[T | None], Generic[T]):
         A sentence under the title.
     does : str
         What taking it does, in a word or two.
+    slow : bool
+        Whether ``take`` may last: then it runs aside, and touches nothing that is open here.
     """
 
     CSS_PATH = "dialog.tcss"
@@ -71,8 +75,10 @@ class Form(ModalScreen[T | None], Generic[T]):
         *,
         says: str = "",
         does: str = "take it",
+        slow: bool = False,
     ) -> None:
         super().__init__()
+        self._slow, self._busy = slow, False
         self._heading, self._fields, self._take = title, fields, take
         self._says, self._does = says, does
 
@@ -123,12 +129,34 @@ class Form(ModalScreen[T | None], Generic[T]):
         return self.query_one("#take")
 
     def _submit(self) -> None:
+        typed = {field.key: self._value(field) for field in self._fields}
+        if self._slow:
+            self._take_aside(typed)
+            return
         try:
-            result = self._take({field.key: self._value(field) for field in self._fields})
+            result = self._take(typed)
         except RoughnessError as error:
-            self.query_one("#wrong", Static).update(Text(str(error)))
+            self._say(str(error))
             return
         self.dismiss(result)
+
+    @work(group="aside")
+    async def _take_aside(self, typed: Mapping[str, str]) -> None:
+        if self._busy:
+            return
+        self._busy = True
+        self._say("Working...")
+        try:
+            result = await asyncio.to_thread(self._take, typed)
+        except RoughnessError as error:
+            self._say(str(error))
+            return
+        finally:
+            self._busy = False
+        self.dismiss(result)
+
+    def _say(self, sentence: str) -> None:
+        self.query_one("#wrong", Static).update(Text(sentence))
 
     def _value(self, field: Field) -> str:
         widget = self.query_one(f"#{field.key}")

@@ -101,6 +101,7 @@ def new_form(by: str, folder: str = "") -> Form[Path]:
         ],
         take,
         does="make the survey",
+        slow=True,
     )
 
 

@@ -75,6 +75,7 @@ class SurveyScreen(Screen[None]):
         self._watch = FileWatch(pen.survey)
         self._adding = Adding(self)
         self._others = ""
+        self._repaired, self._unlocked = pen.repaired, pen.unlocked
 
     def compose(self) -> ComposeResult:
         """Lay out head, filter, list and detail."""
@@ -123,7 +124,7 @@ class SurveyScreen(Screen[None]):
 
     def draw(self, at: tuple[str, str] | None = None) -> None:
         """Show the lines as they are now; ``at`` moves the cursor to a reach and part."""
-        names = [one.condition for one in self.survey.state.conditions]
+        names = self.lines.conditions
         if self.condition not in names:
             self.condition = names[0] if names else None
         filtered = self.query_one("#filter", Input).value
@@ -133,9 +134,11 @@ class SurveyScreen(Screen[None]):
         self._draw_head()
 
     def _draw_head(self) -> None:
-        width = max(20, self.size.width - 2)
+        width = max(20, self.size.width)
         self.query_one("#title", Static).update(
-            survey_text.title_line(self.survey, self.condition, width)
+            survey_text.title_line(
+                self.survey, self.condition, len(self.lines.conditions) > 1, width
+            )
         )
         progress = self._progress or ("weak points first" if self._weak_first else "")
         counts = self.lines.counts(self.condition)
@@ -160,7 +163,7 @@ class SurveyScreen(Screen[None]):
             self._read(self.query_one(ReachList).visible_reaches())
             return
         room = 8 if self.size.height >= _TALL else 5
-        text = survey_text.detail_text(event.line, room, max(20, self.size.width - 2))
+        text = survey_text.detail_text(event.line, room, max(20, self.size.width))
         self.query_one("#detail", Static).update(text)
 
     def on_resize(self) -> None:
@@ -220,6 +223,7 @@ class SurveyScreen(Screen[None]):
     def look_for_changes(self) -> None:
         """Read again what somebody (or this screen) wrote since the last look."""
         self._greet(self.survey.lock.others())
+        self._warn()
         changed = self._watch.changed()
         if changed is None:
             return
@@ -227,6 +231,17 @@ class SurveyScreen(Screen[None]):
             self._read_on(changed)
         else:
             self._read(changed)
+
+    def _warn(self) -> None:
+        """Say once what writing brought to light about the files."""
+        told = []
+        if self.pen.repaired > self._repaired:
+            told.append("A line that was cut off was moved aside, to a file ending in .torn.")
+        if self.pen.unlocked and not self._unlocked:
+            told.append("There are no locks on this disk: let one person write at a time.")
+        self._repaired, self._unlocked = self.pen.repaired, self.pen.unlocked
+        for sentence in told:
+            self.notify(sentence, severity="warning", timeout=10)
 
     def _greet(self, others: tuple[object, ...]) -> None:
         names = ", ".join(str(one) for one in others)
@@ -277,7 +292,7 @@ class SurveyScreen(Screen[None]):
     @work(exclusive=True, group="dialog")
     async def action_condition(self) -> None:
         """Show another flow condition: the next of two, else one from a list."""
-        names = [one.condition for one in self.survey.state.conditions]
+        names = self.lines.conditions
         if len(names) < 2:
             self.notify("There is no other flow condition; + adds one.")
             return

@@ -11,11 +11,11 @@ from time import perf_counter
 from typing import Final
 
 from roughness.desk.folder import SurveyFolder
-from roughness.desk.places import place_in
 from roughness.desk.rows import INCOMPLETE, Row, rows_of_reach, with_survey_findings
 from roughness.errors import RoughnessError
 from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable, same_name_key
+from roughness.survey.stream import Part
 from roughness.survey.words import MAIN_CHANNEL
 
 _SHORT: Final = {
@@ -108,12 +108,19 @@ class SurveyLines:
         self.survey = survey
         self._rows: dict[str, list[Row]] = {}
         self._complete: dict[str, list[Row]] = {}
+        self._recorded: dict[str, None] = {}
         self._all_of: tuple[str | None, list[SurveyLine]] | None = None
 
     @property
     def names(self) -> list[str]:
         """The reaches in stream order."""
         return [noted.reach for noted in self.survey.state.reaches]
+
+    @property
+    def conditions(self) -> list[str]:
+        """The flow conditions: the survey's own, then those that only a recorded n names."""
+        own = [one.condition for one in self.survey.state.conditions]
+        return list({same_name_key(name): name for name in (*own, *self._recorded)}.values())
 
     @property
     def unread(self) -> list[str]:
@@ -134,6 +141,8 @@ class SurveyLines:
             if name in order:
                 self._rows[name] = rows_of_reach(self.survey, name, order[name])
                 self._complete.pop(name, None)
+                named = (row.condition.condition for row in self._rows[name] if row.condition)
+                self._recorded |= dict.fromkeys(named)
         return len(names)
 
     def find_over_survey(self) -> None:
@@ -210,25 +219,30 @@ class SurveyLines:
             for row in rows
             if row.condition and same_name_key(row.condition.condition) == wanted
         ]
-        yield from here or self._without_condition(rows[0])
+        yield from here or self._without_condition(rows, condition)
 
-    def _without_condition(self, row: Row) -> Iterator[SurveyLine]:
-        """Yield a reach's parts where the survey has no condition to give n for."""
+    def _without_condition(
+        self, rows: Sequence[Row], condition: str | None
+    ) -> Iterator[SurveyLine]:
+        """Yield a reach's parts where there is no n to give under the condition shown."""
+        row = rows[0]
         bare = Row(order=row.order, reach=row.reach, visit=row.visit, findings=_of_trail(row))
-        try:
-            state = self.survey.reach_state(row.reach.reach)
-            parts = [
-                replace(bare, part=place_in(self.survey, row.reach, state, part.part, "").part)
-                for part in state.parts
-            ]
-        except RoughnessError:
-            parts = []
+        known = self.survey.state.condition(condition) if condition else None
+        parts = self._parts(rows)
         if not parts:
             yield SurveyLine(row=bare, apart="no part yet")
-        for one in parts:
-            in_bank = self.survey.state.conditions and one.part
-            says = "carries no flow in bank" if in_bank else "no flow condition yet"
-            yield SurveyLine(row=replace(one, status=INCOMPLETE), apart=says)
+        for part in parts:
+            says = "not asked here" if condition else "no flow condition yet"
+            if known and known.bank == "in bank" and part.setting == "flood-plain":
+                says = "no flow here in bank"
+            yield SurveyLine(row=replace(bare, part=part), apart=says)
+
+    def _parts(self, rows: Sequence[Row]) -> list[Part]:
+        try:
+            known = list(self.survey.reach_state(rows[0].reach.reach).parts)
+        except RoughnessError:
+            known = []
+        return list(dict.fromkeys([*known, *(row.part for row in rows if row.part)]))
 
 
 def _of_trail(row: Row) -> tuple[Finding, ...]:

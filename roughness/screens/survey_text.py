@@ -17,7 +17,7 @@ MOST_FINDINGS: Final = 3
 _LEVEL_WORDS: Final = {"stop": "! stop", "ask": "? ask", "tell": "  tell"}
 
 
-def title_line(survey: SurveyFolder, condition: str | None, width: int) -> Text:
+def title_line(survey: SurveyFolder, condition: str | None, several: bool, width: int) -> Text:
     """Return the survey's name on the left and the flow condition on the right."""
     state = survey.state
     stream = state.described.stream
@@ -25,7 +25,6 @@ def title_line(survey: SurveyFolder, condition: str | None, width: int) -> Text:
     if stream and stream.split()[0] not in state.name:
         name = f"{printable(stream)}: {name}"
     told = f"{printable(condition)}" if condition else "no flow condition yet"
-    several = len(state.conditions) > 1
     right = f"{told} (f: another)" if several else told
     right = fitted(right, min(cell_len(right), width * 3 // 5)).rstrip()
     left = fitted(name, max(0, width - cell_len(right) - 2))
@@ -68,11 +67,11 @@ def _number_sentence(line: SurveyLine, width: int) -> str:
         told = _what_to_do(line)
     else:
         n, spread = row.estimate.n, row.estimate.spread
-        told = f"n {show_n(n.best)}, {show_range(n)}"
+        told = f"n {show_n(n.best)} ({show_range(n)})"
         if row.adopted is not None:
             told = f"adopted {show_n(row.adopted.n)}; the estimate is {told}"
         else:
-            told += f"; spread of the choices {show_n(spread.p16)} to {show_n(spread.p84)}"
+            told += f", spread of choices {show_n(spread.p16)} to {show_n(spread.p84)}"
     name = printable(row.reach.reach)
     name = f"{name}, {line.part_word}" if row.part else name
     # The names stand in the list too: the numbers are what must not be cut.

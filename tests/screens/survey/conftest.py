@@ -45,6 +45,21 @@ class Keyboard:
         for _ in range(3):
             await self.pilot.pause()
 
+    async def until(self, screen: str) -> None:
+        """Wait for work that runs aside."""
+        for _ in range(200):
+            if self.screen == screen:
+                return
+            await self.pilot.pause(0.01)
+
+    async def done(self) -> None:
+        """Wait until a form no longer says that it works."""
+        await self.press()
+        for _ in range(200):
+            if "Working..." not in self.text:
+                return
+            await self.pilot.pause(0.01)
+
     async def type(self, text: str) -> None:
         await self.press(*(SIGNS.get(sign, sign) for sign in text))
 

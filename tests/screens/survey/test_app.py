@@ -28,6 +28,8 @@ async def test_from_an_empty_folder_to_the_walk_and_back_by_keyboard_alone(
         await keyboard.type("Ada\n2")
         await keyboard.type("brook\nSpring 2026\nAlder brook\n\n\nWeir pool\nOsier bend")
         await keyboard.press("tab", "enter")
+        await keyboard.until("SurveyScreen")
+        await keyboard.press()
         assert "2 reaches   0 estimated   2 to do" in keyboard.text
         await keyboard.press("plus", "1")
         await keyboard.type("knee-deep\n")
@@ -106,6 +108,7 @@ async def test_what_cannot_be_made_keeps_everything_that_was_typed(
     async with open_app() as keyboard:
         await keyboard.type("2full\nSpring\n")
         await keyboard.press("enter", "enter", "enter", "tab", "enter")
+        await keyboard.done()
         assert "the folder is not empty" in keyboard.words
         assert "Spring" in keyboard.text
     assert [path.name for path in (here / "full").iterdir()] == ["letter.txt"]
@@ -118,9 +121,11 @@ async def test_reaches_come_from_a_file_and_every_bad_row_is_named(
     async with open_app() as keyboard:
         await keyboard.type("2brook\n\n\n\nlist.csv\n")
         await keyboard.press("tab", "enter")
+        await keyboard.done()
         assert "line 3" in keyboard.words
         assert "write 0.003" in keyboard.words
         (here / "list.csv").write_text("reach,slope\nWeir pool,0.002\nOsier bend,0.003\n")
         await keyboard.press("enter")
+        await keyboard.until("SurveyScreen")
         assert keyboard.screen == "SurveyScreen", keyboard.text
     assert SurveyFolder(here / "brook").reach("Osier bend").slope == 0.003
