@@ -2,7 +2,7 @@
 
 import hashlib
 import os
-import tempfile
+import secrets
 from collections.abc import Iterator
 from contextlib import contextmanager, suppress
 from dataclasses import dataclass
@@ -67,7 +67,7 @@ def keep_copy(survey: Path, source: Path, largest: int = LARGEST_BYTES) -> KeptF
             opened.refuse_changed()
             there = _same_bytes(survey, sha256, size)
             if there is None:
-                _put(aside, survey / stored_name(sha256, source.name))
+                _put(aside, survey / stored_name(sha256, source.name), sha256, size)
         except OSError as error:
             raise _not_kept(source.name, error) from None
     return KeptFile(
@@ -100,12 +100,12 @@ def evidence_folder(survey: Path) -> Path:
 @contextmanager
 def _aside(folder: Path) -> Iterator[Path]:
     """Make a hidden file beside those that are kept; it is gone afterwards."""
+    aside = folder / f".{secrets.token_hex(8)}.part"
     try:
-        handle, name = tempfile.mkstemp(prefix=".", suffix=".part", dir=folder)
+        # As public as any other file of this person: the system takes off what they hide.
+        os.close(os.open(aside, os.O_WRONLY | os.O_CREAT | os.O_EXCL, 0o666))
     except OSError as error:
         raise _not_kept("the file", error) from None
-    os.close(handle)
-    aside = Path(name)
     try:
         yield aside
     finally:
@@ -135,15 +135,15 @@ def _same_bytes(survey: Path, sha256: str, size: int) -> str | None:
     return next((file for file in files if held(survey, file, sha256, size) == "ok"), None)
 
 
-def _put(aside: Path, target: Path) -> None:
+def _put(aside: Path, target: Path, sha256: str, size: int) -> None:
     """Give the copy its name; a file that stands there is never written over."""
-    if os.path.lexists(target):
+    file = f"{EVIDENCE}/{target.name}"
+    # Somebody else may have put the same bytes there just now: putting them again is harmless.
+    if os.path.lexists(target) and held(target.parents[1], file, sha256, size) != "ok":
         raise RecordError(
-            f"{EVIDENCE}/{target.name} is there with other bytes than its name says;"
+            f"{file} is there with other bytes than its name says;"
             " move it out of the folder and attach again"
         )
-    # The temporary file is for one person alone; evidence is as public as any other file.
-    aside.chmod(0o666 & ~_mask())
     aside.replace(target)
     _sync_folder(target.parent)
 
@@ -153,12 +153,6 @@ def _not_kept(name: str, error: OSError) -> NotKeptError:
         f"not kept: {name_as_it_came(name)} could not be copied ({error.strerror or error});"
         " nothing was changed"
     )
-
-
-def _mask() -> int:
-    mask = os.umask(0)
-    os.umask(mask)
-    return mask
 
 
 def _sync_folder(folder: Path) -> None:

@@ -10,6 +10,7 @@ import threading
 import time
 import zlib
 from collections.abc import Iterator
+from concurrent.futures import ThreadPoolExecutor
 from contextlib import contextmanager
 from pathlib import Path
 
@@ -207,6 +208,22 @@ def test_a_file_that_is_written_to_meanwhile_is_refused(survey: Path, tmp_path: 
     with somebody_writes(path):
         sentence = refused(survey, path)
     assert "changed while it was read" in sentence
+
+
+def test_two_who_keep_the_same_photo_at_once_keep_one_file(survey: Path, tmp_path: Path) -> None:
+    path = tmp_path / "a.csv"
+    for attempt in range(30):
+        path.write_bytes(b"%d" % attempt * 1000)
+        at_once = threading.Barrier(4)
+
+        def keep(at_once: threading.Barrier = at_once) -> str:
+            at_once.wait()
+            return keep_copy(survey, path).file
+
+        with ThreadPoolExecutor(4) as people:
+            kept = {one.result() for one in [people.submit(keep) for _ in range(4)]}
+        assert len(kept) == 1
+    assert len(files(survey)) == 30
 
 
 def test_on_a_full_disk_nothing_is_kept_and_it_is_said(survey: Path, tmp_path: Path) -> None:
