@@ -1,7 +1,8 @@
 """A survey's folder as it is read: trails, states and handbooks, read again when a file changed."""
 
 import os
-from dataclasses import dataclass, replace
+from collections.abc import Iterable
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 from pathlib import Path
 
@@ -17,6 +18,7 @@ from roughness.trail.data import NotedReach
 from roughness.trail.folding import fold_reach, fold_survey
 from roughness.trail.locking import SurveyLock
 from roughness.trail.naming import reach_trail, survey_trail
+from roughness.trail.ordering import up_to
 from roughness.trail.reading import Trail, read_trail
 from roughness.trail.state import ReachState, SurveyState
 
@@ -30,6 +32,8 @@ class _Seen:
 
     stamp: tuple[int, int, int]
     trail: Trail
+    at: dict[tuple[str, ...], ReachState] = field(default_factory=dict)
+    """What it said at earlier heads."""
 
     @cached_property
     def of_survey(self) -> SurveyState:
@@ -138,6 +142,15 @@ class SurveyFolder:
             Where the file is not there or cannot be read.
         """
         return self._look(self.reach_path(name)).of_reach
+
+    def reach_state_at(self, name: str, heads: Iterable[str]) -> ReachState:
+        """Return what the trail of a reach said when ``heads`` were its last lines."""
+        seen, wanted = self._look(self.reach_path(name)), tuple(sorted(heads))
+        if wanted == seen.trail.heads:
+            return seen.of_reach
+        if wanted not in seen.at:
+            seen.at[wanted] = fold_reach(up_to(seen.trail, wanted))
+        return seen.at[wanted]
 
     def conflicts(self, name: str) -> tuple[Conflict, ...]:
         """Return what people said apart in united copies of a reach's trail, not yet settled."""

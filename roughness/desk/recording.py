@@ -189,7 +189,7 @@ class Recorder:
             data["segment"] = segment
         if carried_from is not None:
             data["carried_from"] = asdict(carried_from)
-        self._keep_handbooks(place.asked_handbook, place.handbook.key)
+        self.keep_handbooks(place.asked_handbook, place.handbook.key)
         return self.say_of_reach(place.reach.reach, "choose", data)
 
     def record(self, reach: str, raw: bytes, where: str) -> tuple[Line, Estimate]:
@@ -216,7 +216,7 @@ class Recorder:
             )
         body = {key: value for key, value in document.items() if key not in FILED_UNDER}
         data = filed | {"handbook_sha256": handbook.sha256, "estimate": body}
-        self._keep_handbooks(judgement.handbook, handbook.key)
+        self.keep_handbooks(judgement.handbook, handbook.key)
         return self.say_of_reach(noted.reach, "estimate", data), estimate
 
     def adopt(
@@ -231,7 +231,7 @@ class Recorder:
         reason: str,
     ) -> Line:
         """Let another n than the estimate go to the model, with the reason."""
-        place = self._known_place(reach, part, condition)
+        place = self.known_place(reach, part, condition)
         for name, value in (("n", n), ("low", low), ("high", high)):
             if value is not None and not 0 < value <= _LARGEST_N:
                 raise InputError(
@@ -253,7 +253,8 @@ class Recorder:
 
     # -- how it is written ----------------------------------------------------------------
 
-    def _known_place(self, reach: str, part: str, condition: str) -> Place:
+    def known_place(self, reach: str, part: str, condition: str) -> Place:
+        """Return a place of which the survey or the reach's trail knows; refuse any other."""
         noted = self.survey.noted_reach(reach)
         state = self.survey.reach_state(noted.reach)
         parts = [p.part for p in state.parts] + [place.part for place in state.places.values()]
@@ -282,7 +283,7 @@ class Recorder:
         self.unlocked = self.unlocked or not kept.locked
         return kept.line
 
-    def _keep_handbooks(self, *keys: str) -> None:
+    def keep_handbooks(self, *keys: str) -> None:
         """Put a copy of each handbook that is used into the survey, once."""
         own, shipped = contents(self.survey.handbooks), contents(tables_folder())
         for key in dict.fromkeys(keys):

@@ -4,9 +4,11 @@ from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, replace
 
 from roughness.assessment.estimate import Estimate, FactorEstimate
+from roughness.custody.status import ACCEPTED, CHANGED, INCOMPLETE, RETURNED, UNVISITED
 from roughness.desk.conflicting import conflict_findings
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place, Question, place_in
+from roughness.desk.verdicts import status_in
 from roughness.errors import RoughnessError
 from roughness.findings import Estimated, Finding, find_over_survey
 from roughness.quantities.foreign_text import same_name_key
@@ -14,10 +16,8 @@ from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.survey.words import FACTORS, Factor
 from roughness.trail.conflicts import Conflict
 from roughness.trail.lines import Line
+from roughness.trail.review_state import NOT_REVIEWED, FindingAnswer, ReviewState
 from roughness.trail.state import Adopted, PartState, ReachState
-
-# A survey of thousands of reaches has one sentence more where a rule is met by most of them.
-UNVISITED, INCOMPLETE, ESTIMATED = "unvisited", "incomplete", "estimated"
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -38,6 +38,39 @@ class Row:
     estimated_by: str | None = None
     estimated_at: str | None = None
     trail_head: str | None = None
+    review: ReviewState = NOT_REVIEWED
+    supported: frozenset[Factor] = frozenset()
+    """Factors that a photo or document is filed for."""
+
+    @property
+    def verdict(self) -> Line | None:
+        """The line of the acceptance or return that the status rests on."""
+        if self.status == RETURNED and self.review.standing_return:
+            return self.review.standing_return.line
+        if self.status in (ACCEPTED, CHANGED) and self.review.acceptance:
+            return self.review.acceptance.line
+        return None
+
+    @property
+    def reviewed_by(self) -> str | None:
+        """Who accepted or returned it, where that is the status."""
+        return self.verdict.by if self.verdict else None
+
+    @property
+    def reviewed_at(self) -> str | None:
+        """When it was accepted or returned, where that is the status."""
+        return self.verdict.at if self.verdict else None
+
+    def answer_to(self, finding: Finding) -> FindingAnswer | None:
+        """Return what was answered to a finding; a ``stop`` is not answered but mended."""
+        if finding.level == "stop":
+            return None
+        return self.review.finding_answers.get((finding.rule, finding.factor, finding.says))
+
+    @property
+    def open(self) -> tuple[Finding, ...]:
+        """The findings that nobody answered, worst first."""
+        return tuple(finding for finding in self.findings if not self.answer_to(finding))
 
     @property
     def adopted(self) -> Adopted | None:
@@ -156,11 +189,12 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
             bare,
             part=Part(part=part, setting="channel"),
             condition=FlowCondition(condition=condition),
-            status=INCOMPLETE,
+            status=CHANGED if state.review(part, condition).acceptance else INCOMPLETE,
+            review=state.review(part, condition),
             findings=(finding,),
         )
     touched = place.state is not None
-    said = _last_judged(place.state) if place.state else None
+    said = _last_judged(state, place.state) if place.state else None
     visit = _visit(state, place)
     return replace(
         bare,
@@ -168,7 +202,11 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
         condition=place.condition,
         place=place,
         estimate=estimate,
-        status=ESTIMATED if estimate else INCOMPLETE if touched or visit else UNVISITED,
+        status=status_in(
+            survey, place, complete=estimate is not None, visited=bool(touched or visit)
+        ),
+        review=state.review(part, condition),
+        supported=_supported(state, place),
         findings=estimate.findings if estimate else (),
         visit=visit,
         estimated_by=said.by if said else None,
@@ -176,11 +214,23 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
     )
 
 
-def _last_judged(state: PartState) -> Line | None:
+def _supported(state: ReachState, place: Place) -> frozenset[Factor]:
+    """Return the factors that evidence of the reach is filed for, here or for all of it."""
+    here = _key((place.part.part, place.condition.condition))
+    return frozenset(
+        factor
+        for filed in state.evidence
+        if _key((filed.evidence.part or here[0], filed.evidence.condition or here[1])) == here
+        for factor in filed.evidence.factors or ()
+    )
+
+
+def _last_judged(reach: ReachState, state: PartState) -> Line | None:
     """Return the last line that the estimate rests on; adopting a value is none."""
-    lines = [chosen.line for by_factor in state.choices.values() for chosen in by_factor.values()]
-    lines += [state.gate_line] if state.gate_line else []
-    return max(lines, key=lambda line: line.number, default=None)
+    lines = {chosen.line for by_factor in state.choices.values() for chosen in by_factor.values()}
+    lines |= {state.gate_line} if state.gate_line else set()
+    hashes = {line.hash for line in lines}
+    return next((line for line in reversed(reach.effective) if line.hash in hashes), None)
 
 
 def _visit(state: ReachState, place: Place) -> Visit | None:
@@ -240,7 +290,7 @@ def _estimated(row: Row) -> Estimated:
         adopted=row.adopted.n if row.adopted else None,
         jump_noted=bool(row.reach.note) or bool(row.adopted),
         shares=shares,
-        backed=frozenset(entry.factor for entry in row.estimate.factors if entry.note),
+        backed=row.supported | {entry.factor for entry in row.estimate.factors if entry.note},
         unconfirmed=row.place.unconfirmed,
         visit_growth=row.visit.growth if row.visit else None,
         condition_growth=row.condition.growth if row.condition else None,
