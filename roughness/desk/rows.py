@@ -227,10 +227,9 @@ def _supported(state: ReachState, place: Place) -> frozenset[Factor]:
 
 def _last_judged(reach: ReachState, state: PartState) -> Line | None:
     """Return the last line that the estimate rests on; adopting a value is none."""
-    lines = {chosen.line for by_factor in state.choices.values() for chosen in by_factor.values()}
-    lines |= {state.gate_line} if state.gate_line else set()
-    hashes = {line.hash for line in lines}
-    return next((line for line in reversed(reach.effective) if line.hash in hashes), None)
+    judged = {c.line.hash for by_factor in state.choices.values() for c in by_factor.values()}
+    judged |= {state.gate_line.hash} if state.gate_line else set()
+    return next((line for line in reversed(reach.effective) if line.hash in judged), None)
 
 
 def _visit(state: ReachState, place: Place) -> Visit | None:

@@ -41,9 +41,9 @@ def merge_conflict(about: str, factor: Factor | None, words: Sequence[Word]) -> 
     """
     told = [f"{word.says} ({word.by}, {_when(word.at)})" for word in words]
     says = (
-        f"{starting(about)} was set apart by people who had not seen each other:"
+        f"{starting(about)} was set differently by people who had not seen each other's word:"
         f" {enumerate_words(told)}; {words[-1].says} by {words[-1].by} stands until somebody who"
-        " saw both sets it again."
+        " has seen both sets it again."
     )
     return Finding(RULE.level, RULE.key, factor, printable(says))
 

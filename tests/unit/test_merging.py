@@ -14,16 +14,20 @@ from roughness.desk.folder import SurveyFolder
 from roughness.desk.making import new_survey
 from roughness.desk.merging import Merged, conflict_copies, merge, standing_conflicts
 from roughness.desk.places import place_of
-from roughness.desk.recording import Recorder
+from roughness.desk.recording import Recorder, said
 from roughness.desk.rows import rows
 from roughness.errors import BrokenTrailError, InputError
+from roughness.evidence.keeping import keep_copy
 from roughness.survey.choices import Choice, VegetationChoice
 from roughness.survey.stream import Part, Reach
 from roughness.survey.words import Factor
 from roughness.trail.naming import file_name_for
+from roughness.trail.review_data import Evidence
+from roughness.trail.writing import append
 
 Capture = pytest.CaptureFixture[str]
 PART, FLOOD = "main channel", "design flood"
+GRADES = {"irregularity": "minor", "vegetation": "small"}
 FACTORS = {
     "base": {"grade": "gravel"},
     "irregularity": {"grade": "minor"},
@@ -53,8 +57,8 @@ def pen(folder: Path, by: str) -> Recorder:
 
 
 def record(folder: Path, by: str, reach: str) -> None:
-    said = {"part": PART, "condition": FLOOD, "handbook": "usgs-wsp-2339", "setting": "channel"}
-    pen(folder, by).record(reach, json.dumps(said | {"factors": FACTORS}).encode(), "file")
+    place = {"part": PART, "condition": FLOOD, "handbook": "usgs-wsp-2339", "setting": "channel"}
+    pen(folder, by).record(reach, json.dumps(place | {"factors": FACTORS}).encode(), "file")
 
 
 def choose(folder: Path, by: str, grade: str, factor: Factor = "vegetation") -> None:
@@ -157,7 +161,7 @@ def test_a_whole_estimate_against_one_choice_is_a_conflict_about_that_factor(
     record(bo, "Bo", "Weir")
     united(ann, bo)
     (says,) = stops(ann)
-    assert says.startswith("The vegetation was set apart") and "small" in says
+    assert says.startswith("The vegetation was set differently") and "small" in says
 
 
 def test_withdrawing_one_side_settles_it(ann: Path, bo: Path) -> None:
@@ -170,6 +174,25 @@ def test_withdrawing_one_side_settles_it(ann: Path, bo: Path) -> None:
     assert not stops(ann)
     standing = place_of(SurveyFolder(ann), "Weir", PART, FLOOD).at(None, "vegetation")
     assert standing and standing.choice.grade == "medium"
+
+
+def test_the_estimate_is_by_whoever_judged_last_wherever_that_stands_in_the_file(
+    ann: Path, bo: Path
+) -> None:
+    lock, place = SurveyFolder(ann).lock, {"part": PART, "condition": FLOOD}
+    data = place | {"handbook": "usgs-wsp-2339", "handbook_sha256": "c" * 64}
+    for folder, by, factor, hours in (
+        (ann, "Ann", "irregularity", (1, 2, 3)),
+        (bo, "Bo", "vegetation", (4,)),
+    ):
+        for hour in hours:  # Ann's way is the longer one, Bo's word the later one
+            choice = data | {"factor": factor, "choice": {"grade": GRADES[factor]}}
+            at = f"2027-01-01T0{hour}:00:00Z"
+            append(weir(folder), "choose", choice, by=by, at=at, lock=lock)
+    united(ann, bo)
+    assert SurveyFolder(ann).reach_trail("Weir").lines[-2].by == "Ann"
+    row = next(row for row in rows(SurveyFolder(ann)) if row.reach.reach == "Weir")
+    assert (row.estimated_by, row.estimated_at) == ("Bo", "2027-01-01T04:00:00Z")
 
 
 def test_two_adopted_values_are_told_apart(ann: Path, bo: Path) -> None:
@@ -393,11 +416,6 @@ def test_what_is_no_copy_is_refused(what: str, ann: Path, tmp_path: Path) -> Non
 def test_evidence_and_handbooks_come_along_where_they_are_what_the_trails_say(
     ann: Path, bo: Path, tmp_path: Path
 ) -> None:
-    from roughness.desk.recording import said
-    from roughness.evidence.keeping import keep_copy
-    from roughness.trail.review_data import Evidence
-    from roughness.trail.writing import append
-
     kept = []
     for name in ("good", "spoilt", "here"):
         (tmp_path / f"{name}.txt").write_text(name)
