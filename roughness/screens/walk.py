@@ -20,7 +20,7 @@ from roughness.screens.walk_at_hand import NoteDueError, SandDueError
 from roughness.screens.walk_course import Course
 from roughness.screens.walk_dialogs import WalkDialogs
 from roughness.screens.walk_next import open_parts
-from roughness.screens.walk_stack import FactorStack, names_of, origin_of
+from roughness.screens.walk_stack import FactorStack, capital, names_of, origin_of
 from roughness.screens.walk_sum import SumSoFar
 from roughness.screens.walk_summary import CAUTIONS, Summary
 from roughness.screens.walk_table import GradeTable, detail
@@ -184,12 +184,12 @@ class WalkScreen(Screen[None]):
             return self._what_next()
         table = place.handbook.table(place.part.setting, question[1])
         names = [segment.name for segment in place.segments]
-        line = Text(f"{names_of(question, names).capitalize()}: ", style="bold")
+        line = Text(f"{capital(names_of(question, names))}: ", style="bold")
         line.append(table.question)
         standing = self.course.standing
         if standing and (origin := origin_of(standing)):
             confirms = "" if standing.inherited_from else ": ⏎ confirms it"
-            line.append(f" {origin.capitalize()}{confirms}.", style="italic")
+            line.append(f" {capital(origin)}{confirms}.", style="italic")
         if standing and standing.choice.note:
             line.append(f" Note: {printable(standing.choice.note)}", style="italic")
         return line

@@ -8,6 +8,7 @@ from textual.containers import VerticalScroll
 from textual.widgets import Static
 
 from roughness.assessment.estimate import Estimate, FactorEstimate
+from roughness.desk.rows import rows_of_reach, with_survey_findings
 from roughness.errors import RoughnessError
 from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable
@@ -53,10 +54,23 @@ def summary_lines(course: Course, unfolded: bool) -> list[Text]:
         return [Text("A factor is still open: ⏎ goes to it.", style="bold")]
     lines = [*_numbers(estimate, course)]
     lines += [Text(""), *_narrowing(estimate)]
-    lines += [Text(""), *_findings(estimate.findings, unfolded)]
+    lines += [Text(""), *_findings(findings_here(course, estimate), unfolded)]
     lines += [Text(""), Text("Reasoning", style="bold")]
     lines += [Text(sentence) for sentence in estimate.reasoning]
     return lines
+
+
+def findings_here(course: Course, estimate: Estimate) -> tuple[Finding, ...]:
+    """Return what is found here, also beside the neighbouring reaches; worst first."""
+    names = [noted.reach for noted in course.survey.state.reaches]
+    at = names.index(course.place.reach.reach)
+    near = range(max(0, at - 1), min(len(names), at + 2))
+    rows = [row for order in near for row in rows_of_reach(course.survey, names[order], order)]
+    wanted = course.place.part, course.place.condition
+    for row in with_survey_findings(rows):
+        if row.order == at and (row.part, row.condition) == wanted:
+            return row.findings
+    return estimate.findings
 
 
 def _numbers(estimate: Estimate, course: Course) -> list[Text]:

@@ -224,11 +224,13 @@ async def test_the_note_of_the_driver_is_written_from_the_summary(open_walk):
         await someone.gate()
         await someone.press("6", "1", "1", "1", "1", "1")
         assert "No note says yet why it is cobble" in someone.flat
+        assert "neither note nor photo backs it" in someone.flat
         await someone.press("n")
         await someone.type("100 stones")
         await someone.press("enter")
         assert someone.place.at(None, "base").choice.note == "100 stones"
         assert "Noted: 100 stones" in someone.flat
+        assert "neither note nor photo backs it" not in someone.flat
 
 
 async def test_another_n_is_adopted_from_the_summary_with_a_reason(open_walk):

@@ -165,7 +165,7 @@ async def test_one_factor_is_carried_over_and_stays_at_hand(open_walk):
         await someone.press("c")
         assert someone.grade("base") == "cobble"
         assert someone.place.unconfirmed == ("base",)
-        assert "⏎ confirms it" in someone.flat
+        assert "Carried from Weir pool, not confirmed: ⏎ confirms it" in someone.flat
         await someone.press("5")
         assert someone.grade("base") == "gravel"
         assert someone.place.unconfirmed == ()
