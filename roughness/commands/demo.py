@@ -45,7 +45,7 @@ def _print_table(folder: Path) -> None:
     from roughness.commands.survey_table import survey_lines
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
-    from roughness.exports.cautions import IN_ONE_LINE
+    from roughness.reasoning.cautions import IN_ONE_LINE
 
     survey = SurveyFolder(folder)
     print_lines([*survey_lines(survey, rows(survey)), _INVENTED])

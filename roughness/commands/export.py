@@ -38,10 +38,10 @@ def run(args: argparse.Namespace) -> int:
     from roughness.commands.survey_faults import say_faults
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
-    from roughness.exports.cautions import IN_ONE_LINE
     from roughness.exports.table import table_of
     from roughness.exports.writing import refuse_target, write_table
     from roughness.quantities.foreign_text import printable
+    from roughness.reasoning.cautions import IN_ONE_LINE
 
     survey = SurveyFolder(args.survey)
     refuse_target(args.target, survey.folder)

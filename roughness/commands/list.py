@@ -22,7 +22,7 @@ def run(args: argparse.Namespace) -> int:
     from roughness.commands.survey_table import survey_lines
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
-    from roughness.exports.cautions import IN_ONE_LINE
+    from roughness.reasoning.cautions import IN_ONE_LINE
 
     survey = SurveyFolder(args.survey)
     found = rows(survey)

@@ -7,7 +7,7 @@ from contextlib import suppress
 from pathlib import Path
 from typing import BinaryIO
 
-from roughness.errors import NotKeptError
+from roughness.errors import InputError, NotKeptError
 from roughness.quantities.foreign_text import printable
 
 
@@ -47,6 +47,23 @@ def write_whole(path: Path, content: bytes | Callable[[BinaryIO], None]) -> None
         if aside is not None:
             with suppress(OSError):
                 aside.unlink()
+
+
+def refuse_place(target: Path, survey: Path) -> None:
+    """Say no to a result that would lie inside the survey's own folder, or where a folder is.
+
+    Raises
+    ------
+    InputError
+        Before anything is computed or written.
+    """
+    where, folder = printable(str(target)), target.parent.resolve()
+    if folder == survey.resolve() or survey.resolve() in folder.parents:
+        raise InputError(
+            "it lies inside the survey's own folder", where=where, wanted="write it elsewhere"
+        )
+    if target.is_dir():
+        raise InputError("it is a folder", where=where, wanted="name a file")
 
 
 def _mask() -> int:

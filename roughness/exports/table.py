@@ -8,8 +8,8 @@ from roughness import __version__
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place
 from roughness.desk.rows import Row
-from roughness.exports.cautions import CAUTIONS
 from roughness.exports.columns import COLUMNS
+from roughness.reasoning.cautions import CAUTIONS
 from roughness.survey.stream import Visit
 from roughness.survey.words import FACTORS, Factor
 

@@ -4,7 +4,7 @@ from collections.abc import Callable, Mapping
 from pathlib import Path
 from typing import Final
 
-from roughness.desk.whole_files import write_whole
+from roughness.desk.whole_files import refuse_place, write_whole
 from roughness.errors import InputError
 from roughness.exports.as_csv import csv_bytes, schema_bytes
 from roughness.exports.as_json import json_bytes
@@ -31,13 +31,7 @@ def refuse_target(target: Path, survey: Path) -> None:
         fault = "is not supported yet" if ending in _LATER else "is not known here"
         what = f"the ending {printable(ending)} {fault}" if ending else "it has no ending"
         raise InputError(what, where=where, wanted=f"name it {known}")
-    folder = target.parent.resolve()
-    if folder == survey.resolve() or survey.resolve() in folder.parents:
-        raise InputError(
-            "it lies inside the survey's own folder", where=where, wanted="write it elsewhere"
-        )
-    if target.is_dir():
-        raise InputError("it is a folder", where=where, wanted="name a file")
+    refuse_place(target, survey)
 
 
 def write_table(table: Table, target: Path) -> tuple[Path, ...]:

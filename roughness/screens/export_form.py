@@ -6,10 +6,10 @@ from pathlib import Path
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.recording import Recorder
 from roughness.desk.rows import Row, rows
-from roughness.exports.cautions import IN_ONE_LINE
 from roughness.exports.table import table_of
 from roughness.exports.writing import refuse_target, write_table
 from roughness.quantities.foreign_text import printable
+from roughness.reasoning.cautions import IN_ONE_LINE
 from roughness.screens.form import Field, Form
 
 

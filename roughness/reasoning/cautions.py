@@ -1,4 +1,4 @@
-"""The words of caution that go with every export."""
+"""The words of caution that go with every value that leaves the tool."""
 
 from typing import Final
 
