@@ -10,8 +10,9 @@ from functools import cached_property
 from time import perf_counter
 from typing import Final
 
+from roughness.custody.status import INCOMPLETE
 from roughness.desk.folder import SurveyFolder
-from roughness.desk.rows import INCOMPLETE, Row, rows_of_reach, with_survey_findings
+from roughness.desk.rows import Row, rows_of_reach, with_survey_findings
 from roughness.errors import RoughnessError
 from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable, same_name_key
