@@ -3,6 +3,8 @@
 from dataclasses import dataclass
 
 from roughness.desk.checking import Checked
+from roughness.desk.copies import NotTaken
+from roughness.desk.merging import StandingConflict, United
 from roughness.desk.rows import Row
 from roughness.findings import Finding, Level
 from roughness.quantities.ranges import Range
@@ -52,6 +54,23 @@ class CheckDocument:
     intact: bool
     broken: tuple[Broken, ...]
     findings: tuple[PlacedFinding, ...]
+
+
+@dataclass(frozen=True, kw_only=True)
+class MergeDocument:
+    """What ``roughness merge --json`` prints."""
+
+    united: tuple[United, ...]
+    """Trails that changed."""
+    copied: tuple[str, ...]
+    """Evidence and handbooks that came along."""
+    left: tuple[str, ...]
+    """Evidence and handbooks that were not copied, and why."""
+    not_taken: tuple[NotTaken, ...]
+    """Trails that could not be united, and why."""
+    removable: tuple[str, ...]
+    """Conflict copies inside the survey that hold nothing that it lacks."""
+    conflicts: tuple[StandingConflict, ...]
 
 
 def listed(row: Row) -> Listed:

@@ -3,7 +3,6 @@
 import argparse
 import sys
 from collections.abc import Iterator
-from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -12,23 +11,8 @@ from roughness.commands.arguments import add_json, add_survey
 from roughness.commands.results import print_json, print_lines
 
 if TYPE_CHECKING:
-    from roughness.desk.copies import NotTaken
-    from roughness.desk.merging import Merged, StandingConflict, United
-
-
-@dataclass(frozen=True, kw_only=True)
-class MergeDocument:
-    """What ``roughness merge --json`` prints."""
-
-    united: "tuple[United, ...]"
-    """Trails that changed."""
-    copied: tuple[str, ...]
-    left: tuple[str, ...]
-    """Evidence and handbooks that were not copied, and why."""
-    not_taken: "tuple[NotTaken, ...]"
-    """Trails that could not be united, and why."""
-    removable: tuple[str, ...]
-    conflicts: "tuple[StandingConflict, ...]"
+    from roughness.commands.documents import MergeDocument
+    from roughness.desk.merging import Merged, United
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -47,6 +31,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Unite and say what came of it; 1 where a conflict stands or a trail was left aside."""
+    from roughness.commands.documents import MergeDocument
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.merging import merge, standing_conflicts
 
@@ -72,7 +57,7 @@ def run(args: argparse.Namespace) -> int:
     return STANDS_STOPPED if document.conflicts or document.not_taken else DONE
 
 
-def _lines(document: MergeDocument) -> Iterator[str]:
+def _lines(document: "MergeDocument") -> Iterator[str]:
     from roughness.commands.plain_tables import wrapped
     from roughness.quantities.foreign_text import printable
 

@@ -6,7 +6,7 @@ from typing import Any, Final
 from pydantic import TypeAdapter
 
 from roughness.assessment.estimate import Estimate
-from roughness.commands.documents import CheckDocument, Listed
+from roughness.commands.documents import CheckDocument, Listed, MergeDocument
 from roughness.exports.columns import COLUMNS
 from roughness.findings import Finding, rule_table
 from roughness.handbook.toml_shape import HandbookShape
@@ -91,6 +91,7 @@ SCHEMAS: Final[Mapping[str, Callable[[], dict[str, Any]]]] = {
     "trail": trail_schema,
     "list": lambda: _of(tuple[Listed, ...], "What `roughness list --json` prints"),
     "check": lambda: _of(CheckDocument, "What `roughness check --json` prints"),
+    "merge": lambda: _of(MergeDocument, "What `roughness merge --json` prints"),
     "export": _export,
     "handbook": lambda: _of(HandbookShape, "A handbook file (TOML)"),
     "findings": _findings,

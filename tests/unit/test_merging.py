@@ -7,8 +7,10 @@ from pathlib import Path
 from typing import Any
 
 import pytest
+from pydantic import TypeAdapter
 
 from roughness.__main__ import main
+from roughness.commands.documents import MergeDocument
 from roughness.desk.checking import check
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.making import new_survey
@@ -452,8 +454,8 @@ def test_the_command_says_what_it_did_and_leaves_with_one_while_a_conflict_stand
     assert "1 new line, two ends joined" in out and "stop: Weir, main channel" in out
     assert err == ""
     assert main(["merge", str(ann), str(bo), "--json"]) == 1
-    printed = json.loads(capsys.readouterr().out)
-    assert printed["united"] == [] and printed["conflicts"][0]["reach"] == "Weir"
+    printed = TypeAdapter(MergeDocument).validate_json(capsys.readouterr().out, strict=True)
+    assert printed.united == () and printed.conflicts[0].reach == "Weir"
     choose(ann, "Cy", "large")
     assert main(["merge", str(ann), str(bo)]) == 0
     assert capsys.readouterr().out == "nothing new\n"
