@@ -48,9 +48,10 @@ def copies_in(other: Path) -> Found:
     InputError
         Where there is no such file or folder, or no trail in it.
     """
-    if not other.exists() or other.is_symlink():
-        what = "it is a link; links are not followed" if other.is_symlink() else "it is not there"
-        raise InputError(what, where=printable(str(other)), wanted="name a folder or a trail")
+    if not other.exists():
+        raise InputError(
+            "it is not there", where=printable(str(other)), wanted="name a folder or a trail"
+        )
     found = _sorted_out(_files_in(other) if other.is_dir() else [other], inside=False)
     if not any(found):
         raise InputError(

@@ -389,6 +389,29 @@ def test_an_own_torn_tail_is_moved_aside_before_the_file_is_written_anew(
     assert b"half a li" in weir(ann).with_name(f"{weir(ann).name}.torn").read_bytes()
 
 
+def test_line_ends_that_a_tool_changed_are_mended(ann: Path, bo: Path) -> None:
+    choose(ann, "Ann", "medium")
+    choose(bo, "Bo", "severe", "irregularity")
+    for name in trails(bo):
+        (bo / name).write_bytes((bo / name).read_bytes().replace(b"\n", b"\r\n"))
+    united(ann, bo)
+    united(bo, ann)
+    assert trails(ann) == trails(bo)
+    assert not any(b"\r" in raw for raw in trails(bo).values())
+
+
+def test_a_folder_may_be_reached_over_a_link_but_a_linked_trail_is_not_followed(
+    ann: Path, bo: Path, tmp_path: Path
+) -> None:
+    choose(bo, "Bo", "medium")
+    (tmp_path / "way").symlink_to(bo)
+    (bo / "reaches" / "more.jsonl").symlink_to(weir(ann))
+    merged = united(ann, tmp_path / "way")
+    assert len(merged.united) == 1
+    (refused,) = merged.not_taken
+    assert "more.jsonl" in refused.file and "link" in refused.why
+
+
 def test_another_survey_is_refused_whole(ann: Path, tmp_path: Path) -> None:
     other = new_survey(tmp_path / "other", "Di", reaches=[Reach(reach="Weir")]).folder
     before = everything(ann)
