@@ -6,7 +6,8 @@ factors stand on the last axis in the order of ``roughness.survey.words.FACTORS`
 
 from roughness.additive.combining import combine, envelope
 from roughness.additive.moments import shares_of_variance
-from roughness.additive.people import People, people
+from roughness.additive.people import SOURCE as SOURCE_OF_PEOPLE
+from roughness.additive.people import Z95, People, people, sd_of_people, sigma_of_people
 from roughness.additive.segments import (
     envelope_of_segments,
     shares_of_segments,
@@ -15,6 +16,8 @@ from roughness.additive.segments import (
 from roughness.additive.spreads import Spread, quantiles, spread
 
 __all__ = [
+    "SOURCE_OF_PEOPLE",
+    "Z95",
     "People",
     "Spread",
     "combine",
@@ -22,8 +25,10 @@ __all__ = [
     "envelope_of_segments",
     "people",
     "quantiles",
+    "sd_of_people",
     "shares_of_segments",
     "shares_of_variance",
+    "sigma_of_people",
     "spread",
     "spread_of_segments",
 ]

@@ -10,8 +10,8 @@ from roughness.custody.status import ACCEPTED
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place
 from roughness.desk.recording import Recorder
-from roughness.desk.rows import Row, rows
-from roughness.desk.verdicts import authors_of, place_at, same_basis
+from roughness.desk.rows import Row, rows, rows_of_reach
+from roughness.desk.verdicts import authors_of, same_basis
 from roughness.errors import InputError, RecordError, UnknownNameError
 from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable
@@ -88,7 +88,7 @@ class Reviewer:
 
     def refusals(self, row: Row) -> list[Refusal]:
         """Return what speaks against accepting a row, the weightiest first."""
-        return may_accept(self._case(row), self.by, same_person_may=self._same_person_may)
+        return may_accept(self.case(row), self.by, same_person_may=self._same_person_may)
 
     def accept(self, row: Row, *, overruling: str | None = None) -> Line:
         """Accept a row as it was seen, and note in the survey's trail that it was.
@@ -154,7 +154,7 @@ class Reviewer:
                 f"{_in_words(now)} was changed since it was read", wanted="look at it again"
             )
         decision = decide(
-            self._case(fresh),
+            self.case(fresh),
             self.by,
             same_person_may=self._same_person_may,
             overruling=overruling,
@@ -165,10 +165,10 @@ class Reviewer:
         return self._say(now, "accept", data)
 
     def _fresh(self, row: Row) -> Row:
-        """Return the row as it is now; a jump to a neighbour is seen only among all rows."""
+        """Return the row as it is now; what its neighbours make of it stops nothing."""
         wanted = _of(_place(row))
-        for one in rows(self.survey):
-            if one.reach.reach == row.reach.reach and one.place and _of(one.place) == wanted:
+        for one in rows_of_reach(self.survey, row.reach.reach, row.order):
+            if one.place and _of(one.place) == wanted:
                 return one
         raise InputError(f"{_in_words(_place(row))} is not there any more")
 
@@ -176,7 +176,8 @@ class Reviewer:
     def _same_person_may(self) -> bool:
         return bool(self.survey.state.described.same_person_may_accept)
 
-    def _case(self, row: Row) -> Case:
+    def case(self, row: Row) -> Case:
+        """Return what a verdict on a row has before it: stops, open questions, authors, counts."""
         place = _place(row)
         review = row.review
         return Case(
@@ -226,14 +227,6 @@ def _judged(survey: SurveyFolder, row: Row, place: Place) -> dict[str, Any]:
         "handbook_sha256": place.handbook.sha256,
         "condition_line": condition.hash if condition else None,
     }
-
-
-def accepted_place(survey: SurveyFolder, row: Row) -> Place | None:
-    """Return the place of a row as it was accepted last; None where nobody accepted it."""
-    acceptance = row.review.acceptance
-    if acceptance is None or row.place is None:
-        return None
-    return place_at(survey, row.place, acceptance.accept.head)
 
 
 def _place(row: Row) -> Place:

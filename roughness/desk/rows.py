@@ -195,7 +195,7 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
         )
     touched = place.state is not None
     said = _last_judged(state, place.state) if place.state else None
-    visit = _visit(state, place)
+    visit = visit_of(state, place)
     return replace(
         bare,
         part=place.part,
@@ -232,7 +232,8 @@ def _last_judged(reach: ReachState, state: PartState) -> Line | None:
     return next((line for line in reversed(reach.effective) if line.hash in judged), None)
 
 
-def _visit(state: ReachState, place: Place) -> Visit | None:
+def visit_of(state: ReachState, place: Place) -> Visit | None:
+    """Return the visit that a place was judged on: the one it names, else the last one."""
     named = place.state.visit if place.state else None
     if named is None:
         return _last(state.visits)
