@@ -41,9 +41,15 @@ def _bears_on(place: Place, conflict: Conflict) -> bool:
     standing = [
         place.at(zone, factor)
         for zone, factor in place.questions
-        if factor == conflict.factor and conflict.segment in (None, zone)
+        if factor == conflict.factor and _is_zone(zone, conflict)
     ]
     return any(one.line in lines if one else is_here for one in standing)
+
+
+def _is_zone(zone: str | None, conflict: Conflict) -> bool:
+    if conflict.segment is None:
+        return True
+    return zone is not None and same_name_key(zone) == same_name_key(conflict.segment)
 
 
 def _key(part: str, condition: str) -> tuple[str, str]:

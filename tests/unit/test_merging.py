@@ -3,6 +3,7 @@
 import json
 import os
 import shutil
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -23,6 +24,7 @@ from roughness.evidence.keeping import keep_copy
 from roughness.survey.choices import Choice, VegetationChoice
 from roughness.survey.stream import Part, Reach
 from roughness.survey.words import Factor
+from roughness.trail.data import Gate, SegmentShare
 from roughness.trail.naming import file_name_for
 from roughness.trail.review_data import Evidence
 from roughness.trail.writing import append
@@ -164,6 +166,41 @@ def test_a_whole_estimate_against_one_choice_is_a_conflict_about_that_factor(
     united(ann, bo)
     (says,) = stops(ann)
     assert says.startswith("The vegetation was set differently") and "small" in says
+
+
+def test_a_factor_set_apart_is_told_also_where_another_condition_takes_it_over(
+    ann: Path, bo: Path
+) -> None:
+    for folder, by, grade in ((ann, "Ann", "moderate"), (bo, "Bo", "severe")):
+        choose(folder, by, grade, "irregularity")
+    united(ann, bo)
+    place = place_of(SurveyFolder(ann), "Weir", PART, "low flow")
+    pen(ann, "Ann").choose(place, "vegetation", VegetationChoice(grade="small"))
+    told = {
+        row.condition.condition
+        for row in rows(SurveyFolder(ann))
+        if row.condition and any(f.rule == "merge-conflict" for f in row.findings)
+    }
+    assert told == {FLOOD, "low flow"}
+
+
+def test_segments_set_apart_are_told_while_they_are_there(ann: Path, bo: Path) -> None:
+    shares = (
+        SegmentShare(name="Bed", perimeter_percent=60.0),
+        SegmentShare(name="banks", perimeter_percent=40.0),
+    )
+    gate = Gate(part=PART, condition=FLOOD, handbook="usgs-wsp-2339", segments=shares)
+    pen(ann, "Ann").set_gate("Weir", gate)
+    united(bo, ann)
+    for folder, by, grade in ((ann, "Ann", "medium"), (bo, "Bo", "large")):
+        place = place_of(SurveyFolder(folder), "Weir", PART, FLOOD)
+        choice = VegetationChoice(grade=grade)
+        pen(folder, by).choose(place, "vegetation", choice, segment="bed")
+    united(ann, bo)
+    (says,) = stops(ann)
+    assert says.lower().startswith("the vegetation of the segment bed was set differently")
+    pen(ann, "Ann").set_gate("Weir", replace(gate, segments=None))
+    assert not stops(ann)
 
 
 def test_withdrawing_one_side_settles_it(ann: Path, bo: Path) -> None:
