@@ -33,7 +33,7 @@ _LARGEST_N = 10.0
 
 def now() -> str:
     """Return the time as lines carry it: RFC 3339 with offset."""
-    return datetime.now().astimezone().isoformat(timespec="seconds")
+    return datetime.now().astimezone().isoformat(timespec="milliseconds")
 
 
 def said(noun: Any) -> dict[str, Any]:

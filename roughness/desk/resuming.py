@@ -1,11 +1,13 @@
 """Where somebody left: the reach that was touched last, and the question that is open there."""
 
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 
 from roughness.desk.folder import SurveyFolder
-from roughness.desk.places import Place, Question
+from roughness.desk.places import Place, Question, place_of
 from roughness.errors import RoughnessError
 from roughness.trail.lines import instant
+from roughness.trail.state import PartState, ReachState
 
 
 @dataclass(frozen=True)
@@ -19,19 +21,38 @@ class LeftAt:
 
 def left_at(survey: SurveyFolder) -> LeftAt | None:
     """Return where the last line about any part was written; None in a fresh survey."""
-    latest = None
+    touched = ((state.last_touched, state, name) for name, state in _readable(survey))
+    return _latest(
+        (state.place(*last), LeftAt(name, *last)) for last, state, name in touched if last
+    )
+
+
+def left_unfinished(survey: SurveyFolder) -> LeftAt | None:
+    """Return the part that was begun last and still has open questions, if there is one."""
+    begun = (
+        (place, LeftAt(name, place.part, place.condition))
+        for name, state in _readable(survey)
+        for place in state.places.values()
+    )
+    return _latest(
+        (place, at)
+        for place, at in begun
+        if place_of(survey, at.reach, at.part, at.condition).missing
+    )
+
+
+def _readable(survey: SurveyFolder) -> Iterator[tuple[str, ReachState]]:
     for noted in survey.state.reaches:
         try:
-            state = survey.reach_state(noted.reach)
+            yield noted.reach, survey.reach_state(noted.reach)
         except RoughnessError:
             continue
-        if state.last_touched is None:
-            continue
-        place = state.place(*state.last_touched)
-        when = instant(place.last_at) if place else None
-        if when is not None and (latest is None or when >= latest[0]):
-            latest = when, LeftAt(noted.reach, *state.last_touched)
-    return latest[1] if latest else None
+
+
+def _latest(places: Iterable[tuple[PartState | None, LeftAt]]) -> LeftAt | None:
+    timed = [(instant(place.last_at), at) for place, at in places if place]
+    known = [(when, at) for when, at in timed if when is not None]
+    return max(reversed(known), key=lambda one: one[0])[1] if known else None
 
 
 def open_question(place: Place) -> Question | None:

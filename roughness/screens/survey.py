@@ -13,7 +13,7 @@ from textual.screen import Screen
 from textual.widgets import Input, Static
 
 from roughness.desk.recording import Recorder, now
-from roughness.desk.resuming import LeftAt, left_at
+from roughness.desk.resuming import LeftAt, left_at, left_unfinished
 from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.screens import survey_text
@@ -43,7 +43,7 @@ class SurveyScreen(Screen[None]):
     pen : Recorder
         Who writes, and to which survey.
     walk_at_once : bool
-        Whether the walk opens over it, at the place last worked on.
+        Whether the walk opens over it, at the part that was begun and is not done.
     """
 
     CSS_PATH = "survey.tcss"
@@ -95,7 +95,8 @@ class SurveyScreen(Screen[None]):
         if len(self.lines.names) <= _SMALL:
             self.lines.read(self.lines.names)
             self.lines.find_over_survey()
-            last = left_at(self.survey)
+            unfinished = left_unfinished(self.survey) if self._walk_at_once else None
+            last = unfinished or left_at(self.survey)
             self._come_back(last)
             if last is not None and self._walk_at_once:
                 self._adding.open_walk(last.reach, last.part, last.condition)

@@ -10,7 +10,7 @@ from roughness.desk.making import new_survey
 from roughness.desk.offers import n_so_far, offers
 from roughness.desk.places import place_of
 from roughness.desk.recording import Recorder
-from roughness.desk.resuming import LeftAt, left_at, open_question
+from roughness.desk.resuming import LeftAt, left_at, left_unfinished, open_question
 from roughness.desk.rows import rows
 from roughness.errors import InputError
 from roughness.survey.choices import (
@@ -143,6 +143,8 @@ def test_somebody_who_left_in_the_middle_comes_back_to_the_open_question(pen: Re
     again = SurveyFolder(pen.survey.folder)
     assert left_at(again) == LeftAt("Lower", CHANNEL, FLOOD)
     assert open_question(place_of(again, "Lower", CHANNEL, FLOOD)) == (None, "obstruction")
+    walk(pen, "Upper", CHANNEL, FLOOD, WHOLE[4])
+    assert left_unfinished(pen.survey) == LeftAt("Lower", CHANNEL, FLOOD)
 
 
 def test_an_offer_tells_n_and_water_before_it_is_taken(pen: Recorder) -> None:
