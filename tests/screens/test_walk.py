@@ -1,5 +1,7 @@
 """Walking a part: gate, factors, summary, and what is kept on the way."""
 
+from typing import Any
+
 import pytest
 from textual import events
 from textual.widgets import Input
@@ -8,7 +10,9 @@ BOTH_SIZES = pytest.mark.parametrize("size", [(80, 24), (120, 40)])
 
 
 @BOTH_SIZES
-async def test_a_channel_with_bed_and_banks_is_walked_to_its_summary(open_walk, size):
+async def test_a_channel_with_bed_and_banks_is_walked_to_its_summary(
+    open_walk: Any, size: Any
+) -> None:
     async with open_walk(size=size) as someone:
         await someone.gate(apart=True)
         assert "Base of the bed" in someone.text
@@ -27,7 +31,7 @@ async def test_a_channel_with_bed_and_banks_is_walked_to_its_summary(open_walk, 
         assert "What would narrow the range most: base of the bed" in someone.flat
 
 
-async def test_the_gate_is_one_line_and_says_what_was_answered(open_walk):
+async def test_the_gate_is_one_line_and_says_what_was_answered(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate("4.6 ft", apart=True)
         gate = someone.place.state.gate
@@ -40,7 +44,7 @@ async def test_the_gate_is_one_line_and_says_what_was_answered(open_walk):
         assert [line.kind for line in lines[4:]] == ["gate"]
 
 
-async def test_the_whole_gate_can_be_skipped_with_enter(open_walk):
+async def test_the_whole_gate_can_be_skipped_with_enter(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.press(*["enter"] * 4)
         assert someone.place.state.gate.depth_m is None
@@ -48,7 +52,7 @@ async def test_the_whole_gate_can_be_skipped_with_enter(open_walk):
         assert "water" not in someone.text.splitlines()[8]
 
 
-async def test_what_is_typed_faster_than_it_is_shown_is_not_lost(open_walk):
+async def test_what_is_typed_faster_than_it_is_shown_is_not_lost(open_walk: Any) -> None:
     async with open_walk() as someone:
         for key, sign in (("1", "1"), ("full_stop", "."), ("4", "4"), *[("enter", "\r")] * 4):
             someone.app.post_message(events.Key(key, sign))
@@ -57,7 +61,7 @@ async def test_what_is_typed_faster_than_it_is_shown_is_not_lost(open_walk):
         assert someone.place.depth_m == 1.4
 
 
-async def test_keys_typed_faster_than_they_are_shown_keep_their_order(open_walk):
+async def test_keys_typed_faster_than_they_are_shown_keep_their_order(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         fast = (("6", "6"), ("3", "3"), ("backspace", None), ("2", "2"), ("1", "1"))
@@ -70,14 +74,14 @@ async def test_keys_typed_faster_than_they_are_shown_keep_their_order(open_walk)
         assert someone.grade("variation") == "gradual"
 
 
-async def test_enter_takes_no_grade_that_nobody_marked(open_walk):
+async def test_enter_takes_no_grade_that_nobody_marked(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.press(*["enter"] * 6)
         assert len(someone.place.missing) == 6
         assert "no grade is marked yet" in someone.text
 
 
-async def test_what_does_not_fit_in_the_gate_is_said_and_stays_typed(open_walk):
+async def test_what_does_not_fit_in_the_gate_is_said_and_stays_typed(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.type("1,4")
         await someone.press(*["enter"] * 4)
@@ -86,7 +90,7 @@ async def test_what_does_not_fit_in_the_gate_is_said_and_stays_typed(open_walk):
         assert someone.place.state is None
 
 
-async def test_shares_follow_width_and_depth_until_somebody_types_them(open_walk):
+async def test_shares_follow_width_and_depth_until_somebody_types_them(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.type("1")
         width = someone.app.screen.query_one("#width_m", Input)
@@ -95,14 +99,14 @@ async def test_shares_follow_width_and_depth_until_somebody_types_them(open_walk
         assert someone.app.screen.query_one("#shares", Input).value == "bed 80, banks 20"
 
 
-async def test_leaving_the_first_gate_leaves_the_walk_and_writes_nothing(open_walk):
+async def test_leaving_the_first_gate_leaves_the_walk_and_writes_nothing(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.press("escape")
         assert someone.app.left
         assert someone.place.state is None
 
 
-async def test_each_grade_shows_its_n_and_water_before_it_is_taken(open_walk):
+async def test_each_grade_shows_its_n_and_water_before_it_is_taken(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1")
@@ -112,14 +116,14 @@ async def test_each_grade_shows_its_n_and_water_before_it_is_taken(open_walk):
         assert "+20 cm" in line
 
 
-async def test_a_row_beyond_nine_is_taken_with_arrows_and_enter(open_walk):
+async def test_a_row_beyond_nine_is_taken_with_arrows_and_enter(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("9", "backspace", "down", "down", "down", "enter")
         assert someone.grade("base") == "coarse-gravel-smooth"
 
 
-async def test_two_plains_follow_from_the_summary_with_enter(open_walk):
+async def test_two_plains_follow_from_the_summary_with_enter(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "1", "1", "1")
@@ -134,7 +138,7 @@ async def test_two_plains_follow_from_the_summary_with_enter(open_walk):
         assert "All parts of this reach are done" in someone.text
 
 
-async def test_a_choice_is_corrected_and_the_walk_goes_back_to_where_it_was(open_walk):
+async def test_a_choice_is_corrected_and_the_walk_goes_back_to_where_it_was(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "backspace", "backspace", "3")
@@ -143,7 +147,7 @@ async def test_a_choice_is_corrected_and_the_walk_goes_back_to_where_it_was(open
         assert someone.grade("variation") == "gradual"
 
 
-async def test_passing_over_what_stands_writes_nothing(open_walk):
+async def test_passing_over_what_stands_writes_nothing(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "backspace", "backspace")
@@ -153,7 +157,7 @@ async def test_passing_over_what_stands_writes_nothing(open_walk):
         assert "Obstruction" in someone.text
 
 
-async def test_leaving_in_the_middle_comes_back_to_the_same_question(open_walk):
+async def test_leaving_in_the_middle_comes_back_to_the_same_question(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "escape")
@@ -163,7 +167,7 @@ async def test_leaving_in_the_middle_comes_back_to_the_same_question(open_walk):
         assert "3 of 6" in someone.text
 
 
-async def test_undo_says_what_it_takes_back_and_goes_there(open_walk):
+async def test_undo_says_what_it_takes_back_and_goes_there(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "3", "u")
@@ -175,14 +179,14 @@ async def test_undo_says_what_it_takes_back_and_goes_there(open_walk):
         assert "Irregularity" in someone.text
 
 
-async def test_undo_is_left_with_escape(open_walk):
+async def test_undo_is_left_with_escape(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "u", "escape")
         assert someone.grade("base") == "cobble"
 
 
-async def test_a_second_condition_asks_only_three_factors(open_walk):
+async def test_a_second_condition_asks_only_three_factors(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "3", "1", "1", "4", "1")
@@ -197,7 +201,9 @@ async def test_a_second_condition_asks_only_three_factors(open_walk):
         assert someone.place.estimate().n.best < 0.06
 
 
-async def test_an_inherited_factor_can_be_changed_for_the_second_condition_alone(open_walk):
+async def test_an_inherited_factor_can_be_changed_for_the_second_condition_alone(
+    open_walk: Any,
+) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "3", "1", "1", "4", "1", "f")
@@ -208,7 +214,7 @@ async def test_an_inherited_factor_can_be_changed_for_the_second_condition_alone
         assert someone.grade("irregularity") == "moderate"
 
 
-async def test_the_gate_opens_again_with_what_was_answered(open_walk):
+async def test_the_gate_opens_again_with_what_was_answered(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate("1.4")
         await someone.press("6", "b")
@@ -219,7 +225,7 @@ async def test_the_gate_opens_again_with_what_was_answered(open_walk):
         assert someone.grade("base") == "cobble"
 
 
-async def test_the_note_of_the_driver_is_written_from_the_summary(open_walk):
+async def test_the_note_of_the_driver_is_written_from_the_summary(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "1", "1", "1")
@@ -233,7 +239,7 @@ async def test_the_note_of_the_driver_is_written_from_the_summary(open_walk):
         assert "neither note nor photo backs it" not in someone.flat
 
 
-async def test_another_n_is_adopted_from_the_summary_with_a_reason(open_walk):
+async def test_another_n_is_adopted_from_the_summary_with_a_reason(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "1", "1", "1", "g")
@@ -245,7 +251,7 @@ async def test_another_n_is_adopted_from_the_summary_with_a_reason(open_walk):
         assert "Adopted for the model: 0.045 (gauged)" in someone.text
 
 
-async def test_the_cautions_stand_on_the_summary(open_walk):
+async def test_the_cautions_stand_on_the_summary(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "1", "1", "1")
@@ -253,7 +259,7 @@ async def test_the_cautions_stand_on_the_summary(open_walk):
         assert "people differ by (from memory)" in someone.flat
 
 
-async def test_the_factor_is_explained_with_a_question_mark(open_walk):
+async def test_the_factor_is_explained_with_a_question_mark(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("question_mark")
@@ -263,7 +269,9 @@ async def test_the_factor_is_explained_with_a_question_mark(open_walk):
 
 
 @BOTH_SIZES
-async def test_names_with_markup_and_slashes_are_shown_as_they_are(survey, open_walk, size):
+async def test_names_with_markup_and_slashes_are_shown_as_they_are(
+    survey: Any, open_walk: Any, size: Any
+) -> None:
     from roughness.desk.recording import Recorder
     from roughness.survey.stream import Reach
 

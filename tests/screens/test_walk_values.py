@@ -1,6 +1,7 @@
 """Values, ranges, notes and measures in the walk; carrying over; what cannot be kept."""
 
 import os
+from typing import Any
 
 import pytest
 
@@ -9,12 +10,12 @@ from roughness.quantities.ranges import Range
 from roughness.trail.locking import SurveyLock
 
 
-def range_of(someone, factor):
+def range_of(someone: Any, factor: str) -> tuple[float | None, float | None, float | None]:
     choice = someone.place.at(None, factor).choice
     return choice.low, choice.best, choice.high
 
 
-async def test_the_best_value_moves_within_its_range_and_is_kept_with_enter(open_walk):
+async def test_the_best_value_moves_within_its_range_and_is_kept_with_enter(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "down", "down", "down", "right")
@@ -24,7 +25,7 @@ async def test_the_best_value_moves_within_its_range_and_is_kept_with_enter(open
         assert range_of(someone, "irregularity") == (None, 0.009, None)
 
 
-async def test_a_range_beyond_what_is_published_needs_a_note(open_walk):
+async def test_a_range_beyond_what_is_published_needs_a_note(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "down", "down", "down", "shift+right", "enter")
@@ -38,7 +39,7 @@ async def test_a_range_beyond_what_is_published_needs_a_note(open_walk):
         assert someone.place.at(None, "irregularity").choice.note == "slumps"
 
 
-async def test_low_best_and_high_can_be_typed(open_walk):
+async def test_low_best_and_high_can_be_typed(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "down", "down", "down", "equals_sign")
@@ -54,7 +55,7 @@ async def test_low_best_and_high_can_be_typed(open_walk):
         assert range_of(someone, "irregularity") == (0.007, 0.0075, None)
 
 
-async def test_escape_drops_what_was_moved_and_says_so(open_walk):
+async def test_escape_drops_what_was_moved_and_says_so(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "down", "down", "right", "escape")
@@ -64,7 +65,7 @@ async def test_escape_drops_what_was_moved_and_says_so(open_walk):
         assert someone.app.left
 
 
-async def test_a_measure_suggests_a_grade_and_enter_takes_it(open_walk):
+async def test_a_measure_suggests_a_grade_and_enter_takes_it(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "m")
@@ -77,7 +78,7 @@ async def test_a_measure_suggests_a_grade_and_enter_takes_it(open_walk):
         assert (choice.grade, choice.blocked_percent) == (None, 8)
 
 
-async def test_a_grade_against_its_measure_is_kept_with_both(open_walk):
+async def test_a_grade_against_its_measure_is_kept_with_both(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "m")
@@ -87,7 +88,7 @@ async def test_a_grade_against_its_measure_is_kept_with_both(open_walk):
         assert (choice.grade, choice.blocked_percent) == ("severe", 8)
 
 
-async def test_a_measure_near_an_edge_offers_both_grades(open_walk):
+async def test_a_measure_near_an_edge_offers_both_grades(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "m")
@@ -100,7 +101,7 @@ async def test_a_measure_near_an_edge_offers_both_grades(open_walk):
         assert "near the edge between minor and appreciable" in resolved[0].choice.note
 
 
-async def test_an_impossible_measure_is_said_and_stays_typed(open_walk):
+async def test_an_impossible_measure_is_said_and_stays_typed(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "1", "1", "m")
@@ -110,7 +111,7 @@ async def test_an_impossible_measure_is_said_and_stays_typed(open_walk):
         assert "180" in someone.text
 
 
-async def test_sand_asks_for_its_regime_and_size(open_walk):
+async def test_sand_asks_for_its_regime_and_size(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("3")
@@ -124,7 +125,7 @@ async def test_sand_asks_for_its_regime_and_size(open_walk):
         assert "Irregularity" in someone.text
 
 
-async def test_sand_of_no_published_size_takes_a_value_of_ones_own(open_walk):
+async def test_sand_of_no_published_size_takes_a_value_of_ones_own(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("3", "right", "right", "enter", "enter")
@@ -136,13 +137,18 @@ async def test_sand_of_no_published_size_takes_a_value_of_ones_own(open_walk):
         assert (choice.regime, choice.best, choice.note) == ("lower", 0.03, "dunes")
 
 
-async def walked(open_walk, reach, part="main channel", keys=("6", "2", "1", "2", "3", "1")):
+async def walked(
+    open_walk: Any,
+    reach: str,
+    part: str = "main channel",
+    keys: tuple[str, ...] = ("6", "2", "1", "2", "3", "1"),
+) -> None:
     async with open_walk(reach=reach, part=part) as someone:
         await someone.gate()
         await someone.press(*keys, "escape")
 
 
-async def test_a_whole_part_is_carried_over_and_confirmed_one_by_one(open_walk):
+async def test_a_whole_part_is_carried_over_and_confirmed_one_by_one(open_walk: Any) -> None:
     await walked(open_walk, "Weir pool")
     async with open_walk(size=(120, 40)) as someone:
         await someone.gate()
@@ -158,7 +164,7 @@ async def test_a_whole_part_is_carried_over_and_confirmed_one_by_one(open_walk):
         assert "summary" in someone.text
 
 
-async def test_one_factor_is_carried_over_and_stays_at_hand(open_walk):
+async def test_one_factor_is_carried_over_and_stays_at_hand(open_walk: Any) -> None:
     await walked(open_walk, "Weir pool")
     async with open_walk() as someone:
         await someone.gate()
@@ -171,7 +177,7 @@ async def test_one_factor_is_carried_over_and_stays_at_hand(open_walk):
         assert someone.place.unconfirmed == ()
 
 
-async def test_the_other_plain_is_a_source_too(open_walk):
+async def test_the_other_plain_is_a_source_too(open_walk: Any) -> None:
     await walked(open_walk, "Osier bend", "left flood plain", ("2", "2", "1", "4"))
     async with open_walk(part="right flood plain") as someone:
         await someone.gate()
@@ -181,14 +187,16 @@ async def test_the_other_plain_is_a_source_too(open_walk):
         assert someone.place.missing == ()
 
 
-async def test_with_nothing_to_carry_the_walk_says_so(open_walk):
+async def test_with_nothing_to_carry_the_walk_says_so(open_walk: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("c")
         assert "nothing to carry over" in someone.text
 
 
-async def test_somebody_elses_lock_is_said_and_the_choice_is_not_shown_as_taken(open_walk, survey):
+async def test_somebody_elses_lock_is_said_and_the_choice_is_not_shown_as_taken(
+    open_walk: Any, survey: Any
+) -> None:
     async with open_walk() as someone:
         await someone.gate()
         survey.lock = SurveyLock(survey.folder, wait_s=0.05)
@@ -201,7 +209,7 @@ async def test_somebody_elses_lock_is_said_and_the_choice_is_not_shown_as_taken(
         assert someone.grade("base") == "cobble"
 
 
-async def test_a_broken_trail_is_said_and_nothing_is_taken(open_walk, survey):
+async def test_a_broken_trail_is_said_and_nothing_is_taken(open_walk: Any, survey: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         path = survey.reach_path("Osier bend")
@@ -213,7 +221,7 @@ async def test_a_broken_trail_is_said_and_nothing_is_taken(open_walk, survey):
         assert "✓" not in someone.text
 
 
-async def test_a_note_that_cannot_be_kept_stays_typed(open_walk, survey):
+async def test_a_note_that_cannot_be_kept_stays_typed(open_walk: Any, survey: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         await someone.press("6", "backspace", "n")
@@ -228,7 +236,7 @@ async def test_a_note_that_cannot_be_kept_stays_typed(open_walk, survey):
 
 
 @pytest.mark.skipif(os.name == "nt", reason="the mode of a file does not bind there")
-async def test_what_others_wrote_meanwhile_stays(open_walk, survey):
+async def test_what_others_wrote_meanwhile_stays(open_walk: Any, survey: Any) -> None:
     async with open_walk() as someone:
         await someone.gate()
         other = Recorder(survey, "Teodor")
@@ -240,8 +248,8 @@ async def test_what_others_wrote_meanwhile_stays(open_walk, survey):
         assert "Variation" in someone.text
 
 
-async def test_keys_counted_for_a_whole_channel(open_walk):
-    """One n: 5 keys of the gate with a depth of 2 signs, then one key a factor."""
+async def test_keys_counted_for_a_whole_channel(open_walk: Any) -> None:
+    """Depth typed with three keys, four Enters, one digit a factor."""
     async with open_walk() as someone:
         keys = ["1", "full_stop", "4", *["enter"] * 4, "6", "2", "1", "2", "3", "1"]
         await someone.press(*keys)
