@@ -55,6 +55,8 @@ def _lines(document: "CheckDocument") -> Iterator[str]:
     for finding in document.findings:
         text = f"{finding.level}: {_about(finding)}: {finding.says} [{finding.rule}]"
         yield from wrapped(printable(text), rest="  ")
+        if finding.answered:
+            yield from wrapped(printable(f"answered: {finding.answered}"), "  ", "    ")
     yield "intact" if document.intact else "not intact"
 
 

@@ -23,6 +23,7 @@ class Listed:
     """Null while a factor is missing."""
     status: str
     open_findings: tuple[Finding, ...]
+    """Those that nobody answered."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -45,6 +46,8 @@ class PlacedFinding:
     rule: str
     factor: Factor | None
     says: str
+    answered: str | None
+    """What was answered to it; null where nobody did."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -81,7 +84,7 @@ def listed(row: Row) -> Listed:
         condition=row.condition.condition if row.condition else None,
         n=row.estimate.n if row.estimate else None,
         status=row.status,
-        open_findings=row.findings,
+        open_findings=row.open,
     )
 
 
@@ -96,6 +99,7 @@ def check_document(checked: Checked) -> CheckDocument:
             rule=finding.rule,
             factor=finding.factor,
             says=finding.says,
+            answered=answer.said.text if (answer := row.answer_to(finding)) else None,
         )
         for row in checked.rows
         for finding in row.findings

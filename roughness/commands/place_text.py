@@ -10,23 +10,59 @@ from roughness.desk.rows import Row
 from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import enumerate_words, show_n, show_range, show_value
+from roughness.trail.telling import describe_line
 
 
 def place_lines(row: Row, units: str | None = None) -> Iterator[str]:
     """Tell one row of a survey whole, in lines of at most 80 cells."""
     if row.place is not None:
         yield from wrapped(f"{_title(row.place)}: {row.status}")
+        yield from _verdict_lines(row)
         yield from _about_place(row, row.place, units)
     else:
         part = f"{printable(row.part.part)}: " if row.part else ""
         yield from wrapped(f"{part}{row.status}")
         if row.part is None:
             yield "  no part of the cross-section was described yet"
-    yield from finding_lines(row.findings, "  ")
+    yield from finding_lines(row.open, "  ")
+    yield from _answered_lines(row)
+    yield from _question_lines(row)
     if row.estimate:
         yield "  Reasoning:"
         for sentence in row.estimate.reasoning:
             yield from wrapped(printable(sentence), "    ", "      ")
+
+
+def _verdict_lines(row: Row) -> Iterator[str]:
+    if row.verdict:
+        text = describe_line(row.verdict)
+        who = f"{printable(row.verdict.by)}, {row.verdict.at}"
+        yield from wrapped(f"Reviewed: {text} ({who})", "  ", "    ")
+
+
+def _answered_lines(row: Row) -> Iterator[str]:
+    answered = [(finding, row.answer_to(finding)) for finding in row.findings]
+    if any(answer for _, answer in answered):
+        yield "  Findings with answers:"
+    for finding, answer in answered:
+        if answer:
+            text = f"{finding.level}: {printable(finding.says)} [{finding.rule}]"
+            yield from wrapped(text, "    ", "      ")
+            said = f"{printable(answer.line.by)}: {printable(answer.said.text)}"
+            yield from wrapped(said, "      ", "        ")
+
+
+def _question_lines(row: Row) -> Iterator[str]:
+    if row.review.questions:
+        yield "  Questions:"
+    for asked in row.review.questions:
+        about = f"{asked.question.factor}: " if asked.question.factor else ""
+        state = " (open)" if asked.is_open else ""
+        text = f"{printable(asked.line.by)}: {about}{printable(asked.question.text)}{state}"
+        yield from wrapped(text, "    ", "      ")
+        for one in asked.answers:
+            told = f"{printable(one.line.by)}: {printable(one.answer.text)}"
+            yield from wrapped(told, "      ", "        ")
 
 
 def _title(place: Place) -> str:

@@ -10,9 +10,11 @@ from roughness.commands.plain_tables import wrapped
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place
 from roughness.desk.rows import Row
+from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_value
 from roughness.trail.lines import Line
+from roughness.trail.review_state import Asked
 from roughness.trail.telling import describe_line
 
 _SHORT_HASH = 12
@@ -71,6 +73,9 @@ def _place(row: Row) -> dict[str, Any]:
         "part": row.part.part if row.part else None,
         "condition": row.condition.condition if row.condition else None,
         "status": row.status,
+        "reviewed_by": row.reviewed_by,
+        "reviewed_at": row.reviewed_at,
+        "questions": [_question(asked) for asked in row.review.questions],
         "estimate": row.estimate.as_document() if row.estimate else None,
         "adopted": adopted
         and {
@@ -83,7 +88,27 @@ def _place(row: Row) -> dict[str, Any]:
         },
         "choices": _choices(place) if place else [],
         "missing": [question_in_words(question) for question in place.missing] if place else [],
-        "findings": [asdict(finding) for finding in row.findings],
+        "findings": [_finding(row, finding) for finding in row.findings],
+    }
+
+
+def _finding(row: Row, finding: Finding) -> dict[str, Any]:
+    answer = row.answer_to(finding)
+    return asdict(finding) | {"answered": answer.said.text if answer else None}
+
+
+def _question(asked: Asked) -> dict[str, Any]:
+    return {
+        "hash": asked.line.hash,
+        "by": asked.line.by,
+        "at": asked.line.at,
+        "factor": asked.question.factor,
+        "segment": asked.question.segment,
+        "follows": asked.question.follows,
+        "text": asked.question.text,
+        "answers": [
+            {"by": one.line.by, "at": one.line.at, "text": one.answer.text} for one in asked.answers
+        ],
     }
 
 

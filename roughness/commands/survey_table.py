@@ -46,7 +46,7 @@ def _cells(row: Row) -> list[str]:
         show_n(n.best) if n else "-",
         f"{show_n(n.low)}-{show_n(n.high)}" if n else "",
         row.status,
-        count_in_words(row.findings),
+        count_in_words(row.open),
     ]
 
 

@@ -5,6 +5,7 @@ from dataclasses import dataclass
 
 from roughness.desk.evidence_lists import evidence_faults, unlisted_evidence
 from roughness.desk.folder import SurveyFolder
+from roughness.desk.proving import faults_of_acceptances, faults_of_order
 from roughness.desk.rows import Row, rows
 from roughness.errors import RoughnessError
 from roughness.handbook.parsing import hash_of
@@ -46,9 +47,11 @@ def check(survey: SurveyFolder) -> Checked:
     faults += [fault for noted, trail, why in trails for fault in _tied(survey, noted, trail, why)]
     faults += _of_handbooks(survey)
     faults += evidence_faults(survey)
+    listed = rows(survey)
+    faults += faults_of_acceptances(survey, listed)
     torn = tuple(trail.file for _, trail, _ in trails if trail.torn)
     found = tuple(dict.fromkeys(faults))
-    return Checked(found, torn, tuple(rows(survey)), unlisted_evidence(survey))
+    return Checked(found, torn, tuple(listed), unlisted_evidence(survey))
 
 
 def faults_of_survey(survey: SurveyFolder) -> tuple[Fault, ...]:
@@ -70,6 +73,7 @@ def _trails(survey: SurveyFolder) -> Iterator[tuple[NotedReach | None, Trail, st
 
 def _of_trail(trail: Trail) -> Iterator[Fault]:
     yield from trail.broken
+    yield from faults_of_order(trail)
     if trail.newer:
         yield trail.newer
     if trail.to_be_merged:

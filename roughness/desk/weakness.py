@@ -53,7 +53,7 @@ def weakness(survey: SurveyFolder, row: Row) -> Weakness:
         findings=findings,
         width=_width(row.estimate),
         disagreement=max(
-            (_difference(survey, row, one, row.estimate) for one in row.review.opinion_of_each),
+            (_difference(survey, one, row.estimate) for one in _unsettled(row)),
             default=0.0,
         ),
     )
@@ -93,7 +93,14 @@ def _width(estimate: Estimate) -> float:
     return math.log(high / low) / (2 * additive.Z95 * sigma)
 
 
-def _difference(survey: SurveyFolder, row: Row, one: SecondOpinion, estimate: Estimate) -> float:
+def _unsettled(row: Row) -> list[SecondOpinion]:
+    """Return the second opinions that no consensus has weighed."""
+    agreed = row.review.consensus
+    weighed = agreed.consensus.opinions if agreed else ()
+    return [one for one in row.review.opinion_of_each if one.line.hash not in weighed]
+
+
+def _difference(survey: SurveyFolder, one: SecondOpinion, estimate: Estimate) -> float:
     second = estimate_of_opinion(survey, one)
     sigma = additive.sigma_of_people(estimate.n.best)
     if second is None or sigma is None or second.n.best <= 0:

@@ -61,7 +61,7 @@ def _cells(survey: SurveyFolder, row: Row) -> dict[str, Cell]:
         "status": row.status,
         "visited": _visited(row.visit),
         "open_findings": " ".join(
-            dict.fromkeys(f"{finding.level}:{finding.rule}" for finding in row.findings)
+            dict.fromkeys(f"{finding.level}:{finding.rule}" for finding in row.open)
         ),
         "trail_head": row.trail_head,
     }
@@ -104,6 +104,8 @@ def _of_n(row: Row) -> dict[str, Cell]:
         "adopted_reason": row.adopted.reason if row.adopted else None,
         "estimated_by": row.estimated_by,
         "estimated_at": row.estimated_at,
+        "reviewed_by": row.reviewed_by,
+        "reviewed_at": row.reviewed_at,
     }
     if row.estimate:
         n, spread = row.estimate.n, row.estimate.spread
