@@ -35,6 +35,7 @@ VERBS: dict[str, str] = {
     "check": "trails, handbooks and findings of a survey",
     "merge": "unite a survey with another copy of it",
     "export": "the table of n for a model: .csv or .json",
+    "report": "one page with every n and its reasons, to read and to print",
     "tables": "handbooks and their rows",
     "schema": "the JSON Schema of an input or output",
 }

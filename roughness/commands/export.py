@@ -3,14 +3,10 @@
 import argparse
 import sys
 from pathlib import Path
-from typing import TYPE_CHECKING
 
 from roughness.commands import DONE, STANDS_STOPPED
 from roughness.commands.arguments import add_by, add_survey
 from roughness.commands.results import print_lines
-
-if TYPE_CHECKING:
-    from roughness.desk.folder import SurveyFolder
 
 ACCEPTED = "accepted"
 # All that a row can be; the words stand in `status`.
@@ -35,6 +31,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Write the table; 1 where a ``stop`` finding stands in one of its rows."""
+    from roughness.commands.noting import note_heads
     from roughness.commands.survey_faults import say_faults
     from roughness.desk.folder import SurveyFolder
     from roughness.desk.rows import rows
@@ -51,20 +48,7 @@ def run(args: argparse.Namespace) -> int:
     open_rows = sum(row.status != ACCEPTED for row in found)
     if open_rows:
         print(f"{open_rows} of {len(found)} rows are not accepted", file=sys.stderr)
-    _note_heads(survey, args.by)
+    note_heads(survey, args.by, "export")
     print(IN_ONE_LINE, file=sys.stderr)
     broken = say_faults(survey)
     return STANDS_STOPPED if broken or any(row.stands_stopped for row in found) else DONE
-
-
-def _note_heads(survey: "SurveyFolder", by: str | None) -> None:
-    """Note in the survey what was exported; the export itself does not hang on it."""
-    from roughness.desk.identity import who
-    from roughness.desk.recording import Recorder
-    from roughness.errors import RoughnessError
-    from roughness.quantities.foreign_text import printable
-
-    try:
-        Recorder(survey, who(by)).note_heads("export")
-    except RoughnessError as error:
-        print(f"the survey does not note this export: {printable(str(error))}", file=sys.stderr)
