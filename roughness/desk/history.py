@@ -1,7 +1,7 @@
 """Who did what and when, and what changed since an acceptance, in plain sentences."""
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from typing import Any, Final
 
 from roughness.desk.folder import SurveyFolder
@@ -197,7 +197,7 @@ def _condition_change(
 def _differences(then: FlowCondition | None, now: FlowCondition | None) -> Iterator[str]:
     if now is None:
         return
-    for word in FlowCondition.__dataclass_fields__:
+    for word in (field.name for field in fields(FlowCondition)):
         old, new = getattr(then, word, None), getattr(now, word)
         if old != new:
             was = "" if old is None else f", was {_shown(old)}"

@@ -1,6 +1,7 @@
 """Whether acceptances are still what they say: recomputed, compared, never replaced."""
 
 from collections.abc import Iterator
+from dataclasses import fields
 from math import isclose
 
 from roughness.assessment.estimate import Estimate
@@ -86,7 +87,7 @@ def _differs(then: Place, accept: Accept) -> Iterator[str]:
 def _other_spread(accept: Accept, estimate: Estimate) -> list[str]:
     return [
         word
-        for word in type(accept.spread).__dataclass_fields__
+        for word in (field.name for field in fields(accept.spread))
         if not isclose(
             getattr(accept.spread, word),
             float(getattr(estimate.spread, word)),

@@ -1,7 +1,7 @@
 """What a reviewer does: ask, answer, accept at one head, return. One line of the trail each."""
 
 from collections.abc import Sequence
-from dataclasses import asdict, dataclass
+from dataclasses import asdict, dataclass, fields
 from typing import Any
 
 from roughness import __version__
@@ -18,6 +18,8 @@ from roughness.quantities.foreign_text import printable
 from roughness.survey.words import Factor
 from roughness.trail.lines import Line
 from roughness.trail.review_data import AcceptedSpread
+
+_SPREAD = tuple(field.name for field in fields(AcceptedSpread))
 
 
 @dataclass
@@ -221,7 +223,7 @@ def _judged(survey: SurveyFolder, row: Row, place: Place) -> dict[str, Any]:
     return _of(place) | {
         "head": row.trail_head,
         "n": asdict(row.estimate.n),
-        "spread": {word: spread[word] for word in AcceptedSpread.__dataclass_fields__},
+        "spread": {word: spread[word] for word in _SPREAD},
         "program": __version__,
         "handbook": place.handbook.key,
         "handbook_sha256": place.handbook.sha256,
