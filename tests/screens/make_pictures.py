@@ -37,7 +37,7 @@ async def picture(name: str, keys: Sequence[str], folder: Path) -> None:
             await settled(pilot)
         svg = app.export_screenshot(title="roughness")
     # A picture in the guide asks nothing of the network: fonts are the reader's own.
-    svg = re.sub(r"@font-face\s*\{.*?\}", "", svg, flags=re.DOTALL)
+    svg = re.sub(r"@font-face\s*\{.*?\}|<!--.*?-->", "", svg, flags=re.DOTALL)
     svg = "\n".join(line.rstrip() for line in svg.splitlines() if line.strip())
     (GUIDE / f"{name}.svg").write_text(f"{svg}\n", encoding="utf-8", newline="\n")
 

@@ -44,7 +44,8 @@ def test_pictures_ask_nothing_of_the_network() -> None:
 
 
 def test_the_top_level_holds_what_was_agreed() -> None:
-    listed = subprocess.run(["git", "ls-files"], cwd=TOP, capture_output=True, text=True)
+    words = ["git", "ls-files"]
+    listed = subprocess.run(words, cwd=TOP, capture_output=True, text=True, check=False)
     if listed.returncode:
         pytest.skip("not a git checkout")
     names = {line.split("/")[0] for line in listed.stdout.splitlines()}
