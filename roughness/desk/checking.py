@@ -9,6 +9,7 @@ from roughness.desk.proving import faults_of_acceptances, faults_of_order
 from roughness.desk.rows import Row, rows
 from roughness.errors import RoughnessError
 from roughness.handbook.parsing import hash_of
+from roughness.quantities.printing import enumerate_words
 from roughness.shelf.editions import shipped_editions
 from roughness.shelf.folders import contents
 from roughness.shelf.handbooks import unusable_handbooks
@@ -77,7 +78,13 @@ def _of_trail(trail: Trail) -> Iterator[Fault]:
     if trail.newer:
         yield trail.newer
     if trail.to_be_merged:
-        yield Fault(trail.file, 0, f"to be merged: it has {len(trail.heads)} ends")
+        ends = enumerate_words([str(trail.by_hash[head].number) for head in _by_line(trail)])
+        what = f"to be merged: it has {len(trail.heads)} ends (lines {ends})"
+        yield Fault(trail.file, 0, what)
+
+
+def _by_line(trail: Trail) -> list[str]:
+    return sorted(trail.heads, key=lambda head: trail.by_hash[head].number)
 
 
 def _tied(
