@@ -36,6 +36,7 @@ VERBS: dict[str, str] = {
     "merge": "unite a survey with another copy of it",
     "export": "the table of n for a model: .csv or .json",
     "report": "one page with every n and its reasons, to read and to print",
+    "fieldsheet": "a sheet for each reach to take along, printed",
     "tables": "handbooks and their rows",
     "schema": "the JSON Schema of an input or output",
 }

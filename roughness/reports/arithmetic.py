@@ -8,7 +8,7 @@ from typing import Final, Literal
 from roughness.assessment.estimate import Estimate, FactorEstimate
 from roughness.quantities.printing import rounded, show_addend, show_n, show_value
 from roughness.quantities.ranges import Range
-from roughness.survey.words import MULTIPLIER, Setting, factors_of
+from roughness.survey.words import MULTIPLIER, Factor, Setting, factors_of
 
 Word = Literal["low", "best", "high"]
 WORDS: Final[tuple[Word, ...]] = ("low", "best", "high")
@@ -102,13 +102,13 @@ def _formula(entries: Sequence[FactorEstimate], terms: Sequence[str]) -> str:
 
 def _figures(entries: Sequence[FactorEstimate], word: Word) -> Iterator[str]:
     for entry in entries:
-        yield figure(entry, getattr(entry, word))
+        yield figure(entry.factor, getattr(entry, word))
 
 
-def figure(entry: FactorEstimate, value: float) -> str:
+def figure(factor: Factor, value: float) -> str:
     """Print a factor's value with every digit it has: three decimals at least, if it adds."""
     told = show_addend(value)
-    if entry.factor == MULTIPLIER or not isclose(float(told), value, abs_tol=_EXACT):
+    if factor == MULTIPLIER or not isclose(float(told), value, abs_tol=_EXACT):
         return show_value(value)
     return told
 

@@ -23,7 +23,7 @@ WIDTH: Final = 460.0
 _MARGIN: Final = 14.0
 # An axis shorter than this ratio would blow up small differences.
 _LEAST_RATIO: Final = 4.0
-_APART: Final = 26.0
+_APART: Final = 36.0
 """Least distance between the labels of two ticks."""
 
 

@@ -3,11 +3,12 @@
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from roughness.assessment.estimate import FactorEstimate
+from roughness.assessment.resolving import Resolved
 from roughness.desk.offers import resolved_at
 from roughness.desk.places import Place, Question, Standing
 from roughness.desk.rows import Row
 from roughness.handbook import Grade
+from roughness.quantities.ranges import Range
 from roughness.reports.arithmetic import figure
 from roughness.reports.photographs import Photograph
 from roughness.survey.words import MULTIPLIER, Factor
@@ -69,7 +70,7 @@ def _line(
     grade = resolved.grade if resolved else None
     measured = resolved.candidates.says if resolved else ""
     here = place.part.part, place.condition.condition
-    told = _numbers(entry) if entry else {}
+    told = _numbers(resolved) if resolved else {}
     return LedgerLine(
         segment=segment,
         factor=factor,
@@ -94,20 +95,20 @@ def _grade_name(grade: Grade | None, standing: Standing) -> str:
     return grade.name if grade else standing.choice.grade or "own value"
 
 
-def _numbers(entry: FactorEstimate) -> dict[str, str]:
-    times = "× " if entry.factor == MULTIPLIER else ""
-    published = entry.published
+def _numbers(resolved: Resolved) -> dict[str, str]:
+    factor, published = resolved.factor, resolved.published
+    times = "× " if factor == MULTIPLIER else ""
     return {
-        "value": times + figure(entry, entry.best),
-        "limits": _between(entry, entry.low, entry.high),
-        "published": _between(entry, published.low, published.high) if published else "none",
+        "value": times + figure(factor, resolved.range.best),
+        "limits": _between(factor, resolved.range),
+        "published": _between(factor, published) if published else "none",
     }
 
 
-def _between(entry: FactorEstimate, low: float, high: float) -> str:
-    if low == high:
-        return figure(entry, low)
-    return f"{figure(entry, low)} to {figure(entry, high)}"
+def _between(factor: Factor, limits: Range) -> str:
+    if limits.is_point:
+        return figure(factor, limits.low)
+    return f"{figure(factor, limits.low)} to {figure(factor, limits.high)}"
 
 
 def _marks(place: Place, standing: Standing) -> Iterator[str]:
