@@ -5,7 +5,7 @@ from dataclasses import dataclass, fields
 from typing import Any, Final
 
 from roughness.desk.folder import SurveyFolder
-from roughness.desk.places import Place
+from roughness.desk.places import Place, place_of
 from roughness.desk.verdicts import condition_at, holds, place_at, review_of, same_basis
 from roughness.quantities.foreign_text import printable, same_name_key
 from roughness.quantities.printing import show_n, show_value
@@ -91,6 +91,7 @@ def since_acceptance(survey: SurveyFolder, place: Place) -> list[Change]:
     flow condition, and last whether n comes out differently from the same choices. Empty
     where nobody accepted it or a return stands against that.
     """
+    place = place_of(survey, place.reach.reach, place.part.part, place.condition.condition)
     acceptance = review_of(survey, place).acceptance
     if acceptance is None:
         return []

@@ -108,6 +108,7 @@ def give_opinion(
 ) -> Line:
     """Record a second estimate by ``pen.by``; see :func:`take_opinion`."""
     where = where or "second opinion"
+    place = pen.known_place(place.reach.reach, place.part.part, place.condition.condition)
     if not any(place.at(*question) for question in place.questions):
         raise InputError("there is no first estimate yet", where=where, wanted="record this as it")
     if is_among(pen.by, authors_of(pen.survey, place)):

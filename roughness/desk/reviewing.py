@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 from dataclasses import asdict, dataclass, fields
+from pathlib import Path
 from typing import Any
 
 from roughness import __version__
@@ -10,9 +11,12 @@ from roughness.custody.status import ACCEPTED
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place
 from roughness.desk.recording import Recorder
+from roughness.desk.recording import now as moment
 from roughness.desk.rows import Row, rows, rows_of_reach
+from roughness.desk.signatures import text_to_sign
+from roughness.desk.signing import sign
 from roughness.desk.verdicts import authors_of, same_basis
-from roughness.errors import InputError, RecordError, UnknownNameError
+from roughness.errors import InputError, RecordError, RoughnessError, UnknownNameError
 from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable
 from roughness.survey.words import Factor
@@ -90,9 +94,13 @@ class Reviewer:
 
     def refusals(self, row: Row) -> list[Refusal]:
         """Return what speaks against accepting a row, the weightiest first."""
-        return may_accept(self.case(row), self.by, same_person_may=self._same_person_may)
+        try:
+            case = self.case(row)
+        except RoughnessError as error:
+            return [Refusal(str(error), False)]
+        return may_accept(case, self.by, same_person_may=self._same_person_may)
 
-    def accept(self, row: Row, *, overruling: str | None = None) -> Line:
+    def accept(self, row: Row, *, overruling: str | None = None, key: Path | None = None) -> Line:
         """Accept a row as it was seen, and note in the survey's trail that it was.
 
         Parameters
@@ -102,15 +110,18 @@ class Reviewer:
             (:func:`roughness.desk.rows.rows`).
         overruling : str, optional
             Why it is accepted although a finding stops it or a question is open.
+        key : Path, optional
+            The SSH key to sign with (:func:`roughness.desk.identity.signing_key`).
 
         Raises
         ------
         InputError
-            What speaks against it; or that the value was changed since ``row`` was read.
+            What speaks against it; that the value was changed since ``row`` was read; or that
+            it could not be signed.
         RecordError
             Where it was not written; or it was, and the survey's trail did not take the note.
         """
-        line = self._accept(row, overruling)
+        line = self._accept(row, overruling, key)
         self._note_heads()
         return line
 
@@ -128,12 +139,12 @@ class Reviewer:
             and not self.refusals(row)
         ]
 
-    def accept_all(self, listed: Sequence[Row]) -> list[Line]:
+    def accept_all(self, listed: Sequence[Row], *, key: Path | None = None) -> list[Line]:
         """Accept each row of a list as it was shown; those before a refusal stay accepted."""
         lines: list[Line] = []
         try:
             for row in listed:
-                lines.append(self._accept(row, None))
+                lines.append(self._accept(row, None, key))
         finally:
             if lines:
                 self._note_heads()
@@ -145,7 +156,7 @@ class Reviewer:
             raise InputError("nothing was said about it yet", wanted="ask a question instead")
         return self._say(place, "return", _of(place) | {"reason": _said(reason, "reason")})
 
-    def _accept(self, row: Row, overruling: str | None) -> Line:
+    def _accept(self, row: Row, overruling: str | None, key: Path | None) -> Line:
         seen = _place(row)
         fresh = self._fresh(row)
         now = _place(fresh)
@@ -164,7 +175,12 @@ class Reviewer:
         data = _judged(self.survey, fresh, now) | _known(
             {"overruled": decision.overruled, "same_person": decision.same_person or None}
         )
-        return self._say(now, "accept", data)
+        at = moment()
+        if key is not None:
+            trail = self.survey.reach_trail(now.reach.reach)
+            signature = sign(text_to_sign(trail, data, self.by, at), key)
+            data |= {"signature": signature.armoured, "signed_by": signature.public_key}
+        return self.pen.say_of_reach(now.reach.reach, "accept", data, at=at)
 
     def _fresh(self, row: Row) -> Row:
         """Return the row as it is now; what its neighbours make of it stops nothing."""

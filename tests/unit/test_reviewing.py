@@ -131,6 +131,27 @@ def test_a_finding_that_stops_cannot_be_answered_away(pen: Recorder, rea: Review
         rea.answer_finding(place(rea.survey), finding, "it is so")
 
 
+def test_rows_without_a_place_are_refused_in_a_sentence_and_never_clean(rea: Reviewer) -> None:
+    rea.pen.add_reach(Reach(reach="Ford"))
+    row = next(row for row in rows(rea.survey) if row.reach.reach == "Ford")
+    (refusal,) = rea.refusals(row)
+    assert "nothing to review" in refusal.says and not refusal.may_be_overruled
+    assert [row.reach.reach for row in rea.clean()] == ["Weir"]
+    with pytest.raises(InputError, match="nothing to review"):
+        rea.accept(row)
+
+
+def test_rows_whose_trail_is_broken_are_refused_in_a_sentence(rea: Reviewer) -> None:
+    path = rea.survey.reach_path("Weir")
+    lines = path.read_bytes().splitlines(keepends=True)
+    path.write_bytes(b"".join(lines[:2] + lines[3:]))
+    assert any("broken" in refusal.says for refusal in rea.refusals(row_of(rea.survey)))
+    assert rea.clean() == []
+    path.unlink()
+    unreadable = next(row for row in rows(rea.survey) if row.reach.reach == "Weir")
+    assert rea.refusals(unreadable)
+
+
 # -- acceptance -----------------------------------------------------------------------------
 
 
@@ -300,9 +321,10 @@ def test_an_acceptance_stands_under(act: str, pen: Recorder, rea: Reviewer) -> N
 @pytest.mark.parametrize("act", CHANGES)
 def test_an_acceptance_falls_with(act: str, pen: Recorder, rea: Reviewer) -> None:
     rea.accept(row_of(rea.survey))
+    seen = place(rea.survey)
     CHANGES[act](pen, rea)
     assert row_of(rea.survey).status == "changed since acceptance"
-    changes = since_acceptance(rea.survey, place(rea.survey))
+    changes = since_acceptance(rea.survey, seen)
     assert any(change.weighs for change in changes), "and it is told what changed"
 
 
