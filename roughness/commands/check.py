@@ -1,4 +1,4 @@
-"""Whether trails, handbooks, evidence and findings of a survey hold; writes nothing."""
+"""Whether trails, handbooks, evidence, signatures and findings hold; writes nothing."""
 
 import argparse
 import sys
@@ -57,6 +57,11 @@ def _lines(document: "CheckDocument") -> Iterator[str]:
         yield from wrapped(printable(text), rest="  ")
         if finding.answered:
             yield from wrapped(printable(f"answered: {finding.answered}"), "  ", "    ")
+    for signed in document.signatures:
+        if signed.verdict != "wrong":
+            level = "tell" if signed.verdict == "verified" else "ask"
+            text = f"{level}: {signed.file} line {signed.line}: {signed.says}"
+            yield from wrapped(printable(text), rest="  ")
     yield "intact" if document.intact else "not intact"
 
 

@@ -6,6 +6,7 @@ from roughness.desk.checking import Checked
 from roughness.desk.copies import NotTaken
 from roughness.desk.merging import StandingConflict, United
 from roughness.desk.rows import Row
+from roughness.desk.signatures import SignatureFound
 from roughness.findings import Finding, Level
 from roughness.quantities.ranges import Range
 from roughness.survey.words import Factor
@@ -57,6 +58,8 @@ class CheckDocument:
     intact: bool
     broken: tuple[Broken, ...]
     findings: tuple[PlacedFinding, ...]
+    signatures: tuple[SignatureFound, ...]
+    """One of each signed acceptance; those that are wrong stand in ``broken`` too."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -109,4 +112,5 @@ def check_document(checked: Checked) -> CheckDocument:
         intact=checked.intact,
         broken=tuple(Broken(file=f.file, line=f.line, what=f.what) for f in checked.broken),
         findings=tuple(sorted(placed, key=lambda one: levels.index(one.level))),
+        signatures=checked.signatures,
     )

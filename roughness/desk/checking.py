@@ -7,6 +7,7 @@ from roughness.desk.evidence_lists import evidence_faults, unlisted_evidence
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.proving import faults_of_acceptances, faults_of_order
 from roughness.desk.rows import Row, rows
+from roughness.desk.signatures import WRONG, SignatureFound, signatures
 from roughness.errors import RoughnessError
 from roughness.handbook.parsing import hash_of
 from roughness.quantities.printing import enumerate_words
@@ -28,6 +29,8 @@ class Checked:
     rows: tuple[Row, ...]
     unlisted: tuple[str, ...] = ()
     """Files in the evidence folder that no trail names."""
+    signatures: tuple[SignatureFound, ...] = ()
+    """What is known of each signed acceptance; what is wrong stands in ``broken`` too."""
 
     @property
     def intact(self) -> bool:
@@ -50,9 +53,11 @@ def check(survey: SurveyFolder) -> Checked:
     faults += evidence_faults(survey)
     listed = rows(survey)
     faults += faults_of_acceptances(survey, listed)
+    signed = signatures(survey)
+    faults += [Fault(one.file, one.line, one.says) for one in signed if one.verdict == WRONG]
     torn = tuple(trail.file for _, trail, _ in trails if trail.torn)
     found = tuple(dict.fromkeys(faults))
-    return Checked(found, torn, tuple(listed), unlisted_evidence(survey))
+    return Checked(found, torn, tuple(listed), unlisted_evidence(survey), signed)
 
 
 def faults_of_survey(survey: SurveyFolder) -> tuple[Fault, ...]:

@@ -16,6 +16,8 @@ from roughness.errors import InputError
 from roughness.quantities.foreign_text import checked_name
 
 VARIABLE = "ROUGHNESS_BY"
+KEY_VARIABLE = "ROUGHNESS_SIGNING_KEY"
+ALLOWED_VARIABLE = "ROUGHNESS_ALLOWED_SIGNERS"
 _MOST_RECENT = 12
 
 
@@ -62,8 +64,30 @@ def remember_survey(folder: Path) -> None:
     _remember(recent=[path, *others][:_MOST_RECENT])
 
 
+def signing_key() -> Path | None:
+    """Return the key that this person signs with: the environment, or ``signing_key`` as kept.
+
+    Whether it can be used is seen when it signs.
+    """
+    path = os.environ.get(KEY_VARIABLE) or _memory().get("signing_key")
+    return Path(path) if isinstance(path, str) and path.strip() else None
+
+
+def allowed_signers() -> Path:
+    """Return where this person lists whose keys count; the file need not be there.
+
+    Never in a survey: whoever can edit a survey could add a key to it.
+    """
+    named = os.environ.get(ALLOWED_VARIABLE)
+    return Path(named) if named else _folder() / "allowed_signers"
+
+
+def _folder() -> Path:
+    return user_config_path("roughness", appauthor=False)
+
+
 def _file() -> Path:
-    return user_config_path("roughness", appauthor=False) / "memory.json"
+    return _folder() / "memory.json"
 
 
 def _memory() -> dict[str, Any]:

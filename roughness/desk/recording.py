@@ -267,14 +267,26 @@ class Recorder:
     def _say_of_survey(self, kind: str, data: Mapping[str, Any]) -> Line:
         return self._say(self.survey.path, self.survey.trail(), kind, data)
 
-    def say_of_reach(self, reach: str, kind: str, data: Mapping[str, Any]) -> Line:
-        """Write one line of a reach's trail; what it says was checked by who calls."""
-        trail = self.survey.reach_trail(reach)
-        return self._say(self.survey.reach_path(reach), trail, kind, data)
+    def say_of_reach(
+        self, reach: str, kind: str, data: Mapping[str, Any], *, at: str | None = None
+    ) -> Line:
+        """Write one line of a reach's trail; what it says was checked by who calls.
 
-    def _say(self, path: Path, known: Trail, kind: str, data: Mapping[str, Any]) -> Line:
+        ``at`` is given where the line carries a signature that names the time.
+        """
+        trail = self.survey.reach_trail(reach)
+        return self._say(self.survey.reach_path(reach), trail, kind, data, at)
+
+    def _say(
+        self,
+        path: Path,
+        known: Trail,
+        kind: str,
+        data: Mapping[str, Any],
+        at: str | None = None,
+    ) -> Line:
         lock = self.survey.lock
-        kept = append(path, kind, data, by=self.by, at=now(), lock=lock, known=known)
+        kept = append(path, kind, data, by=self.by, at=at or now(), lock=lock, known=known)
         return self._took(path, kept)
 
     def _took(self, path: Path, kept: Kept) -> Line:
