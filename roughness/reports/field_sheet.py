@@ -4,7 +4,7 @@ Grades carry the numbers that take them in the walk, so that typing in goes by t
 Values of n are left off unless asked for: who sees them judges towards them.
 """
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Final
 
@@ -25,6 +25,7 @@ from roughness.survey.words import (
     Setting,
     factors_of,
 )
+from roughness.trail.state import ReachState
 
 # The walk takes a grade by one digit; the rest are reached with the arrows.
 _DIGITS: Final = 9
@@ -105,16 +106,18 @@ def field_sheet(survey: SurveyFolder, *, with_ranges: bool = False) -> bytes:
 def _sheet(survey: SurveyFolder, name: str | None) -> Sheet:
     reach: Reach | None = None
     parts: tuple[Part, ...] = ()
+    chosen: dict[str, str] = {}
     fault = ""
     if name is not None:
         try:
-            reach, parts = survey.reach(name), survey.reach_state(name).parts
+            reach, state = survey.reach(name), survey.reach_state(name)
+            parts, chosen = state.parts, _chosen_handbooks(state)
         except RoughnessError as error:
             reach, fault = survey.noted_reach(name), str(error)
     return Sheet(
         reach=reach,
         stretch=stretch(reach, survey.state.described.length_unit) if reach else "",
-        settings=tuple(_settings(survey, parts or _usual_parts(survey.state.conditions))),
+        settings=tuple(_settings(survey, parts or _usual_parts(survey.state.conditions), chosen)),
         fault=fault,
     )
 
@@ -129,20 +132,34 @@ def _usual_parts(conditions: Sequence[FlowCondition]) -> tuple[Part, ...]:
     )
 
 
-def _settings(survey: SurveyFolder, parts: Sequence[Part]) -> Iterator[SettingTold]:
+def _settings(
+    survey: SurveyFolder, parts: Sequence[Part], chosen: Mapping[str, str]
+) -> Iterator[SettingTold]:
+    """Yield the parts by setting and handbook: another handbook has other keys."""
+    conditions = survey.state.conditions
     for setting in SETTINGS:
-        of_setting = tuple(part for part in parts if part.setting == setting)
-        if of_setting:
-            book, _ = survey.handbook_for(None, setting)
+        of_books: dict[str, tuple[Handbook, list[Part]]] = {}
+        for part in parts:
+            if part.setting == setting:
+                book, _ = survey.handbook_for(chosen.get(part.part), setting)
+                of_books.setdefault(book.sha256, (book, []))[1].append(part)
+        for book, named in of_books.values():
             yield SettingTold(
                 setting=setting,
-                parts=of_setting,
+                parts=tuple(named),
                 handbook=book,
                 factors=tuple(
-                    _factor(book, setting, factor, of_setting, survey.state.conditions)
+                    _factor(book, setting, factor, named, conditions)
                     for factor in factors_of(setting)
                 ),
             )
+
+
+def _chosen_handbooks(state: ReachState) -> dict[str, str]:
+    """Return the handbook that each part was judged by so far."""
+    return {
+        place.part: place.handbook for place in state.places.values() if place.handbook is not None
+    }
 
 
 def _factor(
