@@ -24,6 +24,7 @@ from roughness.survey.choices import (
     Judgement,
     MeanderChoice,
     ObstructionChoice,
+    Segment,
     VegetationChoice,
 )
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
@@ -194,6 +195,30 @@ def test_where_only_one_tells_bed_and_banks_apart_only_n_compares(pen: Recorder)
     take_opinion(pen.survey, filled(pen), "file")
     (beside,) = side_by_side(pen.survey, here(pen))
     assert beside.factors == () and beside.difference != 0
+
+
+def test_where_both_tell_bed_and_banks_apart_each_factor_of_each_is_compared(
+    pen: Recorder,
+) -> None:
+    both = (SegmentShare(name="bed", perimeter_percent=60.0),
+            SegmentShare(name="banks", perimeter_percent=40.0))  # fmt: skip
+    pen.set_gate("Weir", Gate(part=CHANNEL, condition=FLOOD, handbook="usgs-wsp-2339",
+                              segments=both))  # fmt: skip
+    banks = Factors(**dict(FIRST) | {"vegetation": VegetationChoice(grade="large")})  # type: ignore[arg-type]
+    told = Judgement(
+        handbook="usgs-wsp-2339",
+        setting="channel",
+        segments=(
+            Segment(name="bed", perimeter_percent=60.0, factors=Factors(**dict(FIRST))),  # type: ignore[arg-type]
+            Segment(name="banks", perimeter_percent=40.0, factors=banks),
+        ),
+    )
+    give_opinion(Recorder(pen.survey, "Bo"), here(pen), told)
+    (beside,) = side_by_side(pen.survey, here(pen))
+    assert len(beside.factors) == 12
+    (apart,) = [one for one in beside.factors if one.difference]
+    assert (apart.segment, apart.factor) == ("banks", "vegetation")
+    assert math.isclose(apart.difference, beside.difference, rel_tol=1e-12)
 
 
 def test_a_consensus_needs_an_opinion_and_a_reason_and_then_replaces_the_choices(
