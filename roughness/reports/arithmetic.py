@@ -66,18 +66,20 @@ def together(estimate: Estimate) -> Sum | None:
     """
     if not estimate.segments:
         return None
-    whole = show_value(sum(segment.perimeter_percent for segment in estimate.segments))
+    segments = estimate.segments
+    whole = show_value(sum(segment.perimeter_percent for segment in segments))
+
+    terms = " + ".join(f"P({s.name}) × n({s.name})^1.5" for s in segments)
 
     def figures(word: Word) -> str:
         added = " + ".join(
-            f"{show_value(s.perimeter_percent)} × {_six(getattr(s.n, word))}^1.5"
-            for s in estimate.segments or ()
+            f"{show_value(s.perimeter_percent)} × {_six(getattr(s.n, word))}^1.5" for s in segments
         )
         return f"(({added}) / {whole})^(2/3)"
 
     return Sum(
         segment=None,
-        symbols="((P1 × n1^1.5 + P2 × n2^1.5 + ...) / (P1 + P2 + ...))^(2/3)",
+        symbols=f"(({terms}) / sum of P)^(2/3)",
         lines=tuple(_worked(word, figures(word), estimate.n, exact=False) for word in WORDS),
     )
 
