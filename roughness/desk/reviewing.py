@@ -177,10 +177,13 @@ class Reviewer:
         )
         at = moment()
         if key is not None:
-            trail = self.survey.reach_trail(now.reach.reach)
-            signature = sign(text_to_sign(trail, data, self.by, at), key)
-            data |= {"signature": signature.armoured, "signed_by": signature.public_key}
+            data |= self._signature(now.reach.reach, data, at, key)
         return self.pen.say_of_reach(now.reach.reach, "accept", data, at=at)
+
+    def _signature(self, reach: str, data: dict[str, Any], at: str, key: Path) -> dict[str, str]:
+        text = text_to_sign(self.survey.reach_trail(reach), data, self.by, at)
+        made = sign(text, key)
+        return {"signature": made.armoured, "signed_by": made.public_key}
 
     def _fresh(self, row: Row) -> Row:
         """Return the row as it is now; what its neighbours make of it stops nothing."""

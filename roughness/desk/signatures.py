@@ -9,6 +9,7 @@ from dataclasses import asdict, dataclass
 from pathlib import Path
 from typing import Any, Final, Literal
 
+from roughness.custody.acceptance import is_among
 from roughness.custody.signed_text import (
     KEY_TYPE,
     NAMESPACE,
@@ -179,11 +180,13 @@ def _asked(text: bytes, armoured: str, line: Line, allowed: _Allowed) -> tuple[V
     if allowed.file is None:
         return UNVERIFIED, f"is signed, by whom was not verified: {allowed.why_not}"
     shown = printable(str(allowed.file))
-    names = [printable(name) for name in names_of_key(armoured, line.at, allowed.file)]
-    if not names:
+    names = names_of_key(armoured, line.at, allowed.file)
+    # Listed under the right name and still not verified: the list lets it sign other things.
+    if not names or is_among(line.by, names):
         key = printable(head_of_signature(armoured).public_key)
         return UNKNOWN, f"is signed by a key that {shown} does not allow for this: {key}"
+    listed = enumerate_words([printable(name) for name in names])
     return WRONG, (
-        f"names {printable(line.by)} and is signed with the key of {enumerate_words(names)};"
+        f"names {printable(line.by)} and is signed with the key of {listed};"
         f" if that is one person, give the key both names in {shown}, with a comma"
     )
