@@ -18,7 +18,8 @@ from roughness.desk.places import place_of
 from roughness.desk.recording import Recorder
 from roughness.desk.reviewing import Reviewer
 from roughness.desk.rows import Row, rows
-from roughness.desk.signatures import SignatureFound
+from roughness.desk.signatures import SignatureFound, text_to_sign
+from roughness.desk.signing import sign
 from roughness.errors import InputError
 from roughness.survey.stream import FlowCondition, Part, Reach
 from roughness.trail.lines import Line, encoded
@@ -284,3 +285,21 @@ def test_a_signed_line_copied_behind_a_return_is_found(ada: Recorder, tmp_path: 
     again(ada, line)
     assert [found.verdict for found in checked(ada).signatures] == ["verified", "wrong"]
     assert any("repeats what was signed" in fault.what for fault in checked(ada).broken)
+
+
+@needs_ssh_keygen
+@pytest.mark.parametrize(
+    ("at", "verdict"),
+    [("2019-06-03T18:20:00+02:00", "verified"), ("2020-06-03T18:20:00+02:00", "unknown key")],
+)
+def test_a_key_that_expired_later_still_speaks_for_what_it_signed_before(
+    ada: Recorder, tmp_path: Path, at: str, verdict: str
+) -> None:
+    key = new_key(tmp_path)
+    allow(tmp_path, "Rea", key, 'valid-before="20200101"')
+    rea = Reviewer(Recorder(ada.survey, "Rea"))
+    data = rea.accept(row(ada.survey)).data
+    made = sign(text_to_sign(ada.survey.reach_trail("Weir"), data, "Rea", at), key)
+    more = {"signature": made.armoured, "signed_by": made.public_key}
+    rea.pen.say_of_reach("Weir", "accept", {**data, **more}, at=at)
+    assert one_signature(ada).verdict == verdict
