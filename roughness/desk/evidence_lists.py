@@ -35,15 +35,18 @@ class Item:
 
         What names no part, condition or factor is about all of them.
         """
-        about = self.evidence
-        return (
-            (about.part is None or same_name_key(about.part) == same_name_key(part))
-            and (
-                about.condition is None
-                or same_name_key(about.condition) == same_name_key(condition)
-            )
-            and (factor is None or not about.factors or factor in about.factors)
-        )
+        return is_about(self.evidence, part, condition, factor)
+
+
+def is_about(evidence: Evidence, part: str, condition: str, factor: Factor | None = None) -> bool:
+    """Whether a piece of evidence is about a place and a factor; see :meth:`Item.supports`."""
+    there = [
+        (evidence.part, part),
+        (evidence.condition, condition),
+    ]
+    return all(
+        named is None or same_name_key(named) == same_name_key(here) for named, here in there
+    ) and (factor is None or not evidence.factors or factor in evidence.factors)
 
 
 def evidence_of(survey: SurveyFolder, reach: str) -> tuple[Item, ...]:

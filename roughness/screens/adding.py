@@ -10,6 +10,8 @@ from textual.screen import Screen
 from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.screens import survey_forms
+from roughness.screens.evidence import EvidenceScreen
+from roughness.screens.evidence_forms import About
 from roughness.screens.export_form import export_form, write_export
 from roughness.screens.menu import Confirm, Menu
 from roughness.screens.survey_lines import SurveyLine
@@ -59,6 +61,13 @@ class Adding:
         if line is not None:
             self._screen.app.push_screen(TimelineScreen(self._screen.survey, line.key[0]))
 
+    def evidence(self) -> None:
+        """Open the photos and documents of the reach."""
+        line, screen = self._screen.selected, self._screen
+        if line is not None:
+            about = About(reach=line.key[0], part=line.key[1] or None, condition=screen.condition)
+            screen.app.push_screen(EvidenceScreen(screen.pen, about, screen.drop))
+
     # -- one dialog after the other -----------------------------------------------------------
 
     def _run(self, steps: Callable[[], Awaitable[None]]) -> None:
@@ -101,7 +110,9 @@ class Adding:
         from roughness.screens.walk import WalkScreen
 
         screen = self._screen
-        screen.app.push_screen(WalkScreen(screen.survey, screen.pen, reach, part, condition))
+        screen.app.push_screen(
+            WalkScreen(screen.survey, screen.pen, reach, part, condition, drop=screen.drop)
+        )
 
     async def _first_reach(self) -> SurveyLine | None:
         name = await self._ask(survey_forms.reach_form(self._screen.pen))

@@ -30,8 +30,10 @@ class PhotoScreen(Screen[None]):
     CSS_PATH = "photo.tcss"
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("left", "turn(-1)", "before"),
-        Binding("right,space", "turn(1)", "next", key_display="→"),
-        Binding("escape,enter,p", "back", "back", key_display="Esc"),
+        Binding("right", "turn(1)", "next"),
+        Binding("space", "turn(1)", show=False),
+        Binding("escape", "back", "back"),
+        Binding("enter,p", "back", show=False),
     ]
 
     def __init__(self, items: Sequence[Item], at: int = 0) -> None:

@@ -18,6 +18,7 @@ from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.screens import survey_text
 from roughness.screens.adding import Adding
+from roughness.screens.evidence_drop import DropFolder
 from roughness.screens.file_watch import FileWatch
 from roughness.screens.help import HelpScreen
 from roughness.screens.help_texts import SURVEY_HELP
@@ -51,10 +52,12 @@ class SurveyScreen(Screen[None]):
         Binding("enter", "walk", "walk"),
         Binding("plus", "add", "add"),
         Binding("slash", "filter", "filter"),
+        Binding("r", "review", "review"),
         Binding("w", "weak_first", "weak first"),
         Binding("g", "adopt", "adopt"),
         Binding("u", "undo", "undo"),
         Binding("e", "export", "export"),
+        Binding("p", "evidence", "photos"),
         Binding("question_mark", "help", "help"),
         Binding("h", "handbook", "handbook"),
         Binding("f", "condition", "flow"),
@@ -74,6 +77,7 @@ class SurveyScreen(Screen[None]):
         self._pressed = 0.0
         self._watch = FileWatch(pen.survey)
         self._adding = Adding(self)
+        self.drop = DropFolder()
         self._others = ""
         self._repaired, self._unlocked = pen.repaired, pen.unlocked
 
@@ -314,6 +318,12 @@ class SurveyScreen(Screen[None]):
         """Add a visit, a flow condition, a part or a reach."""
         self._adding.add()
 
+    def action_review(self) -> None:
+        """Open the review: every place, the weakest first."""
+        from roughness.screens.review import ReviewScreen
+
+        self.app.push_screen(ReviewScreen(self.pen))
+
     def action_adopt(self) -> None:
         """Adopt another n than the estimate, with the reason."""
         self._adding.adopt()
@@ -325,6 +335,10 @@ class SurveyScreen(Screen[None]):
     def action_export(self) -> None:
         """Write the table of n for a model."""
         self._adding.export()
+
+    def action_evidence(self) -> None:
+        """Open the photos and documents of the reach."""
+        self._adding.evidence()
 
     def action_timeline(self) -> None:
         """Tell who said what about the reach, the latest first."""

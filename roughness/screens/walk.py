@@ -15,6 +15,7 @@ from roughness.desk.recording import Recorder
 from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_value
+from roughness.screens.evidence_drop import DropFolder
 from roughness.screens.key_line import KeyLine
 from roughness.screens.walk_at_hand import NoteDueError, SandDueError
 from roughness.screens.walk_course import Course
@@ -43,6 +44,8 @@ class WalkScreen(Screen[None]):
         Who writes.
     reach, part, condition : str
         Where; part and condition may be new.
+    drop : DropFolder, optional
+        The folder that is watched for photos; none is at first.
 
     Raises
     ------
@@ -72,6 +75,7 @@ class WalkScreen(Screen[None]):
         Binding("escape", "leave", "leave"),
         Binding("B", "both", show=False),
         Binding("h", "handbook", "handbook"),
+        Binding("p", "evidence", "photos"),
         Binding("l", "timeline", "timeline"),
         Binding("question_mark", "why", "why"),
         Binding("up", "move(-1)", show=False),
@@ -82,10 +86,17 @@ class WalkScreen(Screen[None]):
     ]
 
     def __init__(
-        self, survey: SurveyFolder, pen: Recorder, reach: str, part: str, condition: str
+        self,
+        survey: SurveyFolder,
+        pen: Recorder,
+        reach: str,
+        part: str,
+        condition: str,
+        *,
+        drop: DropFolder | None = None,
     ) -> None:
         super().__init__()
-        self.survey, self.pen = survey, pen
+        self.survey, self.pen, self.drop = survey, pen, drop or DropFolder()
         self.course = Course(survey, pen, reach, part, condition)
         self.dialogs = WalkDialogs(self)
         self._said = ("", 0)
@@ -192,6 +203,9 @@ class WalkScreen(Screen[None]):
             line.append(f" {capital(origin)}{confirms}.", style="italic")
         if standing and standing.choice.note:
             line.append(f" Note: {printable(standing.choice.note)}", style="italic")
+        if count := self.course.evidence_count:
+            told = "1 photo or document" if count == 1 else f"{count} photos or documents"
+            line.append(f" {told}: p.", style="italic")
         return line
 
     def _what_next(self) -> Text:
@@ -366,6 +380,10 @@ class WalkScreen(Screen[None]):
     def action_handbook(self) -> None:
         """Open the published tables."""
         self.dialogs.handbook()
+
+    def action_evidence(self) -> None:
+        """Open the photos and documents of the reach, those of the factor at hand first."""
+        self.dialogs.evidence()
 
     def action_timeline(self) -> None:
         """Tell who said what about this reach."""

@@ -7,6 +7,7 @@ highlighted row, a measure that was typed and a value that was moved.
 from dataclasses import replace
 
 from roughness.desk import carrying
+from roughness.desk.evidence_lists import is_about
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place, Question, place_of
 from roughness.desk.recording import Recorder
@@ -73,6 +74,13 @@ class Course(AtHand):
         """Place of the question at hand, 1 for the first."""
         assert self.question is not None
         return self.place.questions.index(self.question) + 1
+
+    @property
+    def evidence_count(self) -> int:
+        """How many photos and documents are about the factor at hand."""
+        factor = self.question[1] if self.question else None
+        filed = self.survey.reach_state(self.reach).evidence
+        return sum(is_about(one.evidence, self.part, self.condition, factor) for one in filed)
 
     def _todo(self) -> list[Question]:
         """Return the questions nobody answered here, then those only carried over."""

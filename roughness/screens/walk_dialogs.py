@@ -331,6 +331,22 @@ class WalkDialogs:
             )
         )
 
+    def evidence(self) -> None:
+        """Open the evidence of the reach; what is attached supports the factor at hand."""
+        from roughness.screens.evidence import EvidenceScreen
+        from roughness.screens.evidence_forms import About
+
+        place, question = self._course.place, self._course.question
+        about = About(
+            reach=place.reach.reach,
+            part=place.part.part,
+            condition=place.condition.condition,
+            factor=question[1] if question else None,
+        )
+        screen = self._screen
+        evidence = EvidenceScreen(screen.pen, about, screen.drop)
+        screen.app.push_screen(evidence, lambda _: screen.draw())
+
     def timeline(self) -> None:
         """Open the trail of the reach in sentences."""
         from roughness.screens.timeline import TimelineScreen

@@ -21,6 +21,7 @@ b          depth, in or over bank, moving sand, bed and banks apart
 f          another flow condition: asks only what changes
 g          at the end: adopt another n, with a reason
 Space      at the end: all findings
+p          photos and documents: look, attach, watch a folder for them
 h  l       handbook; timeline of this reach
 Esc        back to the survey; everything taken is kept already
 
