@@ -60,12 +60,17 @@ def _templates() -> Environment:
         "n": show_n,
         "value": show_value,
         "percent": show_share,
+        "change": _change,
         "short": lambda text: text[:SHORT_HASH],
         "when": shown_time,
         "words": lambda words: enumerate_words([printable(word) for word in words]),
     }
     found.globals |= {"version": __version__}
     return found
+
+
+def _change(n: float) -> str:
+    return f"{'−' if n < 0 else '+'}{show_n(abs(n))}" if n else "0"
 
 
 def _harmless(value: Any) -> Any:

@@ -3,10 +3,10 @@
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 
+from roughness.desk.agreement import Beside, side_by_side
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.history import Change, Told, since_acceptance, timeline
 from roughness.desk.rows import Row
-from roughness.desk.weakness import estimate_of_opinion
 from roughness.errors import RoughnessError
 from roughness.findings import Finding, rule_table
 from roughness.quantities.printing import show_value
@@ -32,12 +32,11 @@ class FindingTold:
 
 @dataclass(frozen=True, kw_only=True)
 class OpinionTold:
-    """A second estimate beside the first: who, and how far apart."""
+    """A second estimate, side by side with the first."""
 
     opinion: SecondOpinion
-    n: float | None
-    """None where its handbook cannot be read now."""
-    note: str | None
+    beside: Beside | None
+    """None where one of the two cannot be computed now."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -55,6 +54,8 @@ class PlaceBlock:
     opinions: tuple[OpinionTold, ...]
     changes: tuple[Change, ...]
     """What was said since the acceptance."""
+    signatures: Mapping[int, str]
+    """What was found of signed acceptances of the reach, by the number of their line."""
 
     @property
     def opened(self) -> str:
@@ -84,9 +85,25 @@ class ReachSection:
 
 
 def section_of(
-    survey: SurveyFolder, number: int, found: Sequence[Row], axis: Axis, *, with_position: bool
+    survey: SurveyFolder,
+    number: int,
+    found: Sequence[Row],
+    axis: Axis,
+    *,
+    with_position: bool,
+    signatures: Mapping[int, str],
 ) -> ReachSection:
-    """Return the section of one reach from its rows; a trail that cannot be read says so."""
+    """Return the section of one reach from its rows; a trail that cannot be read says so.
+
+    Parameters
+    ----------
+    survey, number, found, axis
+        The survey, which section it is, the rows of the reach, the axis of all bars.
+    with_position : bool
+        Whether it says where reach and photos lie.
+    signatures : mapping
+        What was found of signed acceptances, by the number of their line in the trail.
+    """
     first = found[0]
     anchor, name = f"reach-{number}", first.reach.reach
     try:
@@ -103,7 +120,7 @@ def section_of(
         head=first.trail_head,
         visits=visits,
         places=tuple(
-            _block(survey, f"{anchor}-{at}", row, photographs, axis)
+            _block(survey, f"{anchor}-{at}", row, photographs, axis, signatures)
             for at, row in enumerate(found, start=1)
         ),
         photographs=photographs,
@@ -113,7 +130,12 @@ def section_of(
 
 
 def _block(
-    survey: SurveyFolder, anchor: str, row: Row, photographs: Sequence[Photograph], axis: Axis
+    survey: SurveyFolder,
+    anchor: str,
+    row: Row,
+    photographs: Sequence[Photograph],
+    axis: Axis,
+    signatures: Mapping[int, str],
 ) -> PlaceBlock:
     estimate = row.estimate
     return PlaceBlock(
@@ -133,14 +155,16 @@ def _block(
             for finding in row.findings
         ),
         opinions=tuple(_opinions(survey, row)),
+        signatures=signatures,
         changes=tuple(since_acceptance(survey, row.place)) if row.place else (),
     )
 
 
 def _opinions(survey: SurveyFolder, row: Row) -> Iterator[OpinionTold]:
+    pairs = side_by_side(survey, row.place) if row.place and row.review.opinions else ()
+    by_line = {pair.line: pair for pair in pairs}
     for one in row.review.opinion_of_each:
-        second = estimate_of_opinion(survey, one)
-        yield OpinionTold(opinion=one, n=second.n.best if second else None, note=one.opinion.note)
+        yield OpinionTold(opinion=one, beside=by_line.get(one.line.hash))
 
 
 def stretch(reach: Reach, unit: str | None) -> str:

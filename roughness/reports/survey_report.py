@@ -4,10 +4,21 @@ from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from datetime import datetime
 from itertools import groupby
+from pathlib import PurePath
+from typing import Final
 
 from roughness.custody.status import ACCEPTED
+from roughness.desk.agreement import agreement
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.rows import Row
+from roughness.desk.signatures import (
+    UNKNOWN,
+    UNVERIFIED,
+    VERIFIED,
+    WRONG,
+    Verdict,
+    signatures,
+)
 from roughness.desk.weakness import order
 from roughness.errors import RoughnessError
 from roughness.handbook import FactorTable, Handbook
@@ -18,6 +29,14 @@ from roughness.reports.pages import page
 from roughness.reports.reach_sections import PlaceBlock, ReachSection, section_of
 from roughness.survey.words import Setting, factors_of
 from roughness.trail.lines import Line
+
+# In words of the page's own: a sentence with the path of somebody's list goes to no reader.
+_FOUND: Final[dict[Verdict, str]] = {
+    VERIFIED: "verified by the list of keys of whoever made this page",
+    UNKNOWN: "it fits, but the list of keys of whoever made this page does not know the key",
+    UNVERIFIED: "not verified when this page was made",
+    WRONG: "WRONG, it does not fit what it stands for; roughness check says why",
+}
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -67,6 +86,7 @@ def survey_report(
         axis=axis,
         sections=sections,
         weak=_weak(survey, found, sections),
+        agreement=agreement(survey, found),
         handbooks=_handbooks(found),
         with_position=with_position,
         cautions=CAUTIONS,
@@ -77,8 +97,28 @@ def survey_report(
 def _sections(
     survey: SurveyFolder, found: Sequence[Row], axis: Axis, *, with_position: bool
 ) -> Iterator[ReachSection]:
+    signed = _signed(survey, found)
     for number, (_, of_reach) in enumerate(groupby(found, key=lambda row: row.order), start=1):
-        yield section_of(survey, number, list(of_reach), axis, with_position=with_position)
+        listed = list(of_reach)
+        yield section_of(
+            survey,
+            number,
+            listed,
+            axis,
+            with_position=with_position,
+            signatures=signed.get(survey.reach_path(listed[0].reach.reach).name, {}),
+        )
+
+
+def _signed(survey: SurveyFolder, found: Sequence[Row]) -> dict[str, dict[int, str]]:
+    """Return what is found of each signature, by the trail's file and the line."""
+    told: dict[str, dict[int, str]] = {}
+    if any(one.accept.signature for row in found for one in row.review.acceptances):
+        for signature in signatures(survey):
+            told.setdefault(PurePath(signature.file).name, {})[signature.line] = _FOUND[
+                signature.verdict
+            ]
+    return told
 
 
 def _weak(
