@@ -7,9 +7,10 @@ that neither can be taken for an option.
 
 import os
 import shutil
+import signal
 import subprocess
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from dataclasses import dataclass
 from pathlib import Path
 from tempfile import TemporaryDirectory
@@ -145,21 +146,39 @@ def _ssh_keygen(words: list[str], text: bytes) -> "subprocess.CompletedProcess[b
     if program is None:
         raise SigningToolError("ssh-keygen is not there", wanted="install the OpenSSH client")
     quiet = {"LC_ALL": "C", "SSH_ASKPASS_REQUIRE": "never"}
+    pipe = subprocess.PIPE
     try:
-        return subprocess.run(
+        with subprocess.Popen(
             [program, "-Y", *words],
-            input=text,
-            capture_output=True,
-            timeout=SECONDS,
-            check=False,
+            stdin=pipe,
+            stdout=pipe,
+            stderr=pipe,
             env={name: os.environ[name] for name in _KEPT if name in os.environ} | quiet,
             # Without a terminal of its own it cannot ask for a passphrase across a screen.
             start_new_session=True,
-        )
-    except subprocess.TimeoutExpired:
-        raise SigningToolError(f"ssh-keygen did not answer within {SECONDS} s") from None
+        ) as process:
+            return _finished(process, text)
     except OSError as error:
         raise SigningToolError(f"ssh-keygen cannot be run ({error.strerror})") from None
+
+
+def _finished(
+    process: "subprocess.Popen[bytes]", text: bytes
+) -> "subprocess.CompletedProcess[bytes]":
+    try:
+        out, told = process.communicate(text, timeout=SECONDS)
+    except subprocess.TimeoutExpired:
+        _stop(process)
+        raise SigningToolError(f"ssh-keygen did not answer within {SECONDS} s") from None
+    return subprocess.CompletedProcess(process.args, process.returncode, out, told)
+
+
+def _stop(process: "subprocess.Popen[bytes]") -> None:
+    """End it with what it started (a helper that waits for a touch); they are one session."""
+    if os.name == "posix":
+        with suppress(ProcessLookupError):
+            os.killpg(process.pid, signal.SIGKILL)
+    process.kill()
 
 
 def _said_yes(run: "subprocess.CompletedProcess[bytes]") -> bool:

@@ -366,6 +366,19 @@ def test_a_tool_that_hangs_or_fails_is_said_and_nothing_called_broken(
 
 
 @pytest.mark.skipif(os.name == "nt", reason="shell scripts")
+def test_a_tool_that_hangs_is_ended_with_what_it_started(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.setattr(signing, "SECONDS", 0.3)
+    late = tmp_path / "late"
+    in_its_place(tmp_path, monkeypatch, f"(sleep 1; touch {late}) & wait")
+    with pytest.raises(SigningToolError, match="did not answer"):
+        signing.fits(b"text", "signature")
+    time.sleep(1.2)
+    assert not late.exists()
+
+
+@pytest.mark.skipif(os.name == "nt", reason="shell scripts")
 @pytest.mark.parametrize("script", ["exit 0", "echo nonsense", "head -c 9999999 /dev/zero"])
 def test_a_tool_that_hands_back_no_signature_writes_nothing(
     survey: SurveyFolder, key: Path, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, script: str
