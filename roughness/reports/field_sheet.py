@@ -114,10 +114,16 @@ def _sheet(survey: SurveyFolder, name: str | None) -> Sheet:
             parts, chosen = state.parts, _chosen_handbooks(state)
         except RoughnessError as error:
             reach, fault = survey.noted_reach(name), str(error)
+    asked = parts or _usual_parts(survey.state.conditions)
+    try:
+        settings = tuple(_settings(survey, asked, chosen))
+    except RoughnessError as error:
+        # The handbook it was judged by is gone: its keys are not known, the usual ones are.
+        settings, fault = tuple(_settings(survey, asked, {})), str(error)
     return Sheet(
         reach=reach,
         stretch=stretch(reach, survey.state.described.length_unit) if reach else "",
-        settings=tuple(_settings(survey, parts or _usual_parts(survey.state.conditions), chosen)),
+        settings=settings,
         fault=fault,
     )
 

@@ -276,7 +276,7 @@ def test_a_photo_is_shown_small_and_without_its_metadata(pen: Recorder, tmp_path
         assert small.format == "JPEG" and max(small.size) <= 420
         assert not small.getexif() and "exif" not in small.info
     assert line.data["sha256"][:12] in page.text
-    assert "photo 1" in page.text and "taken 2026-06-30T14:03:22+02:00" in page.text
+    assert "Photos: 1." in page.text and "taken 2026-06-30T14:03:22+02:00" in page.text
 
 
 def test_without_position_says_nowhere_where_reaches_and_photos_lie(

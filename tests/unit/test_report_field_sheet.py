@@ -13,8 +13,9 @@ from roughness.desk.offers import offers
 from roughness.desk.places import place_of
 from roughness.desk.recording import Recorder
 from roughness.reports.field_sheet import field_sheet
-from roughness.shelf.places import demo_folder
+from roughness.shelf.places import demo_folder, tables_folder
 from roughness.survey.stream import FlowCondition, Part, Reach
+from roughness.trail.data import Gate
 
 _GRADE = re.compile(r'<td class="key">([^<]+)</td><td><strong>([^<]+)</strong>')
 
@@ -98,3 +99,16 @@ def test_a_reach_that_cannot_be_read_is_said_and_has_its_sheet_still(pen: Record
     pen.survey.reach_path("Weir").unlink()
     weir = sheets(field_sheet(pen.survey))[1]
     assert "Its record cannot be read" in weir and "main channel" in weir
+
+
+def test_a_handbook_that_is_gone_leaves_the_sheet_by_the_usual_one(pen: Recorder) -> None:
+    folder = pen.survey.handbooks
+    folder.mkdir(exist_ok=True)
+    usual = (tables_folder() / "cowan-1956.toml").read_text("utf-8")
+    (folder / "agency.toml").write_text(usual.replace('"cowan-1956"', '"agency"', 1), "utf-8")
+    gate = Gate(part="mill race", condition="low flow", handbook="agency")
+    pen.set_gate("Weir", gate)
+    assert "(agency)" in sheets(field_sheet(SurveyFolder(pen.survey.folder)))[1]
+    (folder / "agency.toml").unlink()
+    weir = sheets(field_sheet(SurveyFolder(pen.survey.folder)))[1]
+    assert "agency" in weir and "(usgs-wsp-2339)" in weir
