@@ -10,7 +10,7 @@ from functools import cached_property
 from time import perf_counter
 from typing import Final
 
-from roughness.custody.status import INCOMPLETE
+from roughness.custody.status import ACCEPTED, CHANGED, IN_REVIEW, INCOMPLETE, RETURNED
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.rows import Row, rows_of_reach, with_survey_findings
 from roughness.errors import RoughnessError
@@ -50,13 +50,21 @@ class SurveyLine:
 
     @property
     def status(self) -> str:
-        """How far it is, in words; what is open comes before all else."""
+        """How far it is, in words: what a reviewer said last, else what is open."""
         if not self.read:
             return ""
+        if self.row.status in (ACCEPTED, CHANGED, RETURNED):
+            return self.row.status
         counts = [(self.count(level), level) for level in _LEVELS]
         told = [f"{count} {level}" for count, level in counts if count]
+        if self.row.status == IN_REVIEW and not self.count("stop"):
+            return IN_REVIEW
         if told:
             return f"{'!' if self.count('stop') else '?'} {', '.join(told)}"
+        return self._how_far
+
+    @property
+    def _how_far(self) -> str:
         if self.row.adopted is not None:
             return "adopted"
         if self.row.estimate is not None:
@@ -65,7 +73,7 @@ class SurveyLine:
 
     def count(self, level: str) -> int:
         """Return how many findings of a level are open."""
-        return sum(finding.level == level for finding in self.row.findings)
+        return sum(finding.level == level for finding in self.row.open)
 
     @property
     def weakness(self) -> tuple[int, int, float]:

@@ -1,0 +1,207 @@
+"""The review: every place of the survey, the weakest first, and why it is weak."""
+
+import asyncio
+from typing import ClassVar, Final
+
+from rich.text import Text
+from textual import work
+from textual.app import ComposeResult
+from textual.binding import Binding, BindingType
+from textual.screen import Screen
+from textual.widgets import OptionList, Static
+from textual.widgets.option_list import Option
+
+from roughness.desk.recording import Recorder
+from roughness.desk.rows import Row
+from roughness.errors import RoughnessError
+from roughness.quantities.foreign_text import printable
+from roughness.screens.help import HelpScreen
+from roughness.screens.help_texts import REVIEW_HELP
+from roughness.screens.key_line import KeyLine
+from roughness.screens.review_accept import accept_all_clean
+from roughness.screens.review_lines import ListColumns, list_line
+from roughness.screens.review_opinions import Opinions
+from roughness.screens.review_page import ReviewPage
+from roughness.screens.review_places import Key, ReviewPlaces, key_of
+from roughness.screens.review_words import SIGNS, why_weak
+
+_LOOK_EVERY_S: Final = 2.0
+_TALL: Final = 34
+
+
+class ReviewScreen(Screen[None]):
+    """The places in order of weakness; Enter opens one.
+
+    Parameters
+    ----------
+    pen : Recorder
+        Who reviews, and which survey.
+    """
+
+    CSS_PATH = "review.tcss"
+    BINDINGS: ClassVar[list[BindingType]] = [
+        Binding("enter", "open", "open", priority=True),
+        Binding("o", "opinions", "opinions"),
+        Binding("l", "timeline", "timeline"),
+        Binding("A", "accept_all", "accept all without findings", key_display="A"),
+        Binding("h", "handbook", "handbook", show=False),
+        Binding("escape", "back", "back"),
+        Binding("question_mark", "help", "help"),
+    ]
+
+    def __init__(self, pen: Recorder) -> None:
+        super().__init__()
+        self.pen, self.survey = pen, pen.survey
+        self.places = ReviewPlaces(pen.survey)
+        self._reading = True
+        self.opinions = Opinions(self, pen, lambda: self.selected, self.refresh_places)
+
+    def compose(self) -> ComposeResult:
+        """Lay out title, counts, list and why the selected place is weak."""
+        yield Static("", id="review-title")
+        yield Static("Reading the survey...", id="review-counts")
+        yield Static("", id="review-heading")
+        yield OptionList(id="review-list", compact=True)
+        yield Static("", id="review-detail")
+        yield KeyLine()
+
+    def on_mount(self) -> None:
+        """Read the survey aside: a long one takes its time."""
+        self.query_one(OptionList).focus()
+        self._read()
+        self.set_interval(_LOOK_EVERY_S, self._look)
+
+    @work(exclusive=True, group="reading")
+    async def _read(self) -> None:
+        try:
+            await asyncio.to_thread(self.places.read)
+        except RoughnessError as error:
+            self.say(str(error))
+            return
+        self._reading = False
+        self.draw()
+
+    def _look(self) -> None:
+        if not self._reading and self.is_current and self.places.look():
+            self.draw()
+
+    def on_screen_resume(self) -> None:
+        """Come back from a page: order anew what was judged there."""
+        if not self._reading:
+            self.refresh_places()
+
+    def refresh_places(self) -> None:
+        """Read what changed and show the list as it is now."""
+        self.places.look()
+        self.draw()
+
+    # -- what is shown ----------------------------------------------------------------------
+
+    @property
+    def selected(self) -> Row | None:
+        """The place under the cursor."""
+        at, rows = self.query_one(OptionList).highlighted, self.places.rows
+        return rows[at] if at is not None and at < len(rows) else None
+
+    def draw(self, at: Key | None = None) -> None:
+        """Show the list; ``at`` moves the cursor to a place."""
+        listing = self.query_one(OptionList)
+        kept = at or (key_of(self.selected) if self.selected else None)
+        width = max(40, self.size.width - 2)
+        columns = ListColumns.within(width - 2, others=self.places.has_opinions)
+        rows = self.places.rows
+        listing.clear_options()
+        listing.add_options(
+            Option(list_line(i, row, self.places.weakness(row), columns))
+            for i, row in enumerate(rows)
+        )
+        keys = self.places.keys
+        if rows:
+            listing.highlighted = keys.index(kept) if kept in keys else 0
+        self._draw_head(columns)
+        self._draw_detail()
+
+    def _draw_head(self, columns: ListColumns) -> None:
+        state = self.survey.state
+        name = printable(state.described.stream or state.name)
+        title = Text.assemble((f"Review › {name}", "bold"), "   weakest first", no_wrap=True)
+        self.query_one("#review-title", Static).update(title)
+        told = "   ".join(f"{count} {word}" for word, count in self.places.counts().items())
+        counts = Text(told or "Nothing to review yet.", no_wrap=True, overflow="ellipsis")
+        self.query_one("#review-counts", Static).update(counts)
+        self.query_one("#review-heading", Static).update(columns.heading)
+
+    def _draw_detail(self) -> None:
+        row = self.selected
+        told = Text("")
+        if row is not None:
+            told = Text(why_weak(row, self.places.weakness(row)))
+            for finding in row.open:
+                told.append(f"\n{SIGNS[finding.level]} {finding.level}: {printable(finding.says)}")
+        self.query_one("#review-detail", Static).update(told)
+
+    def on_resize(self) -> None:
+        """Use the room there is."""
+        self.set_class(self.size.height >= _TALL, "-tall")
+        if not self._reading:
+            self.draw()
+
+    def on_option_list_option_highlighted(self) -> None:
+        """Say why the selected place is weak."""
+        self._draw_detail()
+
+    def on_option_list_option_selected(self) -> None:
+        """Open a place that was clicked."""
+        self.action_open()
+
+    def say(self, sentence: str) -> None:
+        """Say one sentence over the list."""
+        self.notify(printable(sentence), severity="warning", timeout=8, markup=False)
+
+    # -- keys -------------------------------------------------------------------------------
+
+    def action_open(self) -> None:
+        """Open the page of the place under the cursor."""
+        row = self.selected
+        if row is None:
+            return
+        if row.place is None:
+            name = printable(row.reach.reach)
+            first = row.findings[0].says if row.findings else "nobody judged a part of it yet"
+            self.say(f"{name} has nothing to review yet: {first}")
+            return
+        self.app.push_screen(ReviewPage(self.pen, self.places, key_of(row)))
+
+    def action_accept_all(self) -> None:
+        """List what has nothing open, then accept it in one step."""
+        self.run_worker(self._accept_all(), exclusive=True, group="dialog")
+
+    async def _accept_all(self) -> None:
+        self.say(await accept_all_clean(self.app, self.pen, self.places))
+        self.refresh_places()
+
+    def action_opinions(self) -> None:
+        """Second opinions on the place under the cursor, and agreement over the survey."""
+        self.opinions.open()
+
+    def action_timeline(self) -> None:
+        """Tell who said what about the reach."""
+        from roughness.screens.timeline import TimelineScreen
+
+        if self.selected is not None:
+            self.app.push_screen(TimelineScreen(self.survey, self.selected.reach.reach))
+
+    def action_handbook(self) -> None:
+        """Open the published tables."""
+        from roughness.screens.handbook import HandbookScreen
+
+        self.app.push_screen(HandbookScreen(self.survey.handbooks))
+
+    def action_help(self) -> None:
+        """Explain the review."""
+        self.app.push_screen(HelpScreen("Review", REVIEW_HELP))
+
+    def action_back(self) -> None:
+        """Leave the review."""
+        self.workers.cancel_node(self)
+        self.dismiss()
