@@ -41,8 +41,8 @@ class HandbookScreen(Screen[None]):
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("right", "turn(1)", "factor", key_display="←→"),
         Binding("left", "turn(-1)", "factor before", show=False),
-        Binding("b", "book", "another handbook"),
-        Binding("slash", "search", "search all"),
+        Binding("b", "book", "handbook"),
+        Binding("slash", "search", "search"),
         Binding("escape", "back", "back"),
         Binding("h", "leave", "back", show=False),
         Binding("question_mark", "help", "help"),

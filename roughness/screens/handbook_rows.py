@@ -10,9 +10,9 @@ from roughness.errors import RoughnessError
 from roughness.handbook import Grade, Handbook
 from roughness.handbook.tables import FactorTable
 from roughness.quantities.foreign_text import printable, same_name_key
-from roughness.quantities.printing import show_value
+from roughness.quantities.printing import show_addend, show_value
 from roughness.shelf.handbooks import handbook_keys, load_handbook
-from roughness.survey.words import SETTINGS, Factor, Setting, factors_of
+from roughness.survey.words import MULTIPLIER, SETTINGS, Factor, Setting, factors_of
 
 PROVENANCE: Final = {
     "seen": "seen in the publication",
@@ -40,8 +40,17 @@ class TableRow:
     @property
     def range(self) -> str:
         """Lowest and highest published value."""
-        low, high = show_value(self.grade.low), show_value(self.grade.high)
+        low, high = self._shown(self.grade.low), self._shown(self.grade.high)
         return low if low == high else f"{low} – {high}"
+
+    @property
+    def typical(self) -> str:
+        """The value the handbook recommends; empty where it names none or a single value."""
+        grade = self.grade
+        return self._shown(grade.best) if grade.best and grade.low < grade.high else ""
+
+    def _shown(self, value: float) -> str:
+        return show_value(value) if self.factor == MULTIPLIER else show_addend(value)
 
     @property
     def place(self) -> str:
@@ -105,7 +114,7 @@ def _all_rows(handbooks: Iterable[Handbook]) -> Iterator[TableRow]:
 def about_row(row: TableRow, *, with_place: bool) -> str:
     """Return everything a row says: the criterion in full, its source, how it was come by."""
     grade = row.grade
-    typical = "" if grade.best is None else f", typical {show_value(grade.best)}"
+    typical = f", typical {row.typical}" if row.typical else ""
     sizes = _sizes(grade.by_d50_mm)
     told = [
         f"{grade.name}: {row.range}{typical}",

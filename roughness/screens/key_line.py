@@ -55,7 +55,8 @@ class KeyLine(Static):
             for active in self.screen.active_bindings.values()
             if active.binding.show and active.enabled
         ]
-        bindings.sort(key=lambda pair: pair[0] == "?")
+        # A binding of several keys stands there once for each of them.
+        bindings = sorted(dict.fromkeys(bindings), key=lambda pair: pair[0] == "?")
         line = Text(self._lead, no_wrap=True, overflow="crop")
         room = self.size.width - sum(len(f"{k} {w}  ") for k, w in bindings if k == "?")
         for key, word in bindings:
