@@ -236,7 +236,7 @@ def _drawn(line: SurveyLine, width: int) -> str:
     if estimate is None:
         return line.apart or ". " * (width // 2)
     adopted = line.row.adopted.n if line.row.adopted else None
-    return bars.bar(width, estimate.n, (estimate.spread.p16, estimate.spread.p84), None, adopted)
+    return bars.bar(width, estimate.n, (estimate.spread.p05, estimate.spread.p95), None, adopted)
 
 
 def _found(lines: Sequence[SurveyLine], key: tuple[str, str] | None, fallback: int) -> int:

@@ -71,7 +71,7 @@ def _number_sentence(line: SurveyLine, width: int) -> str:
         if row.adopted is not None:
             told = f"adopted {show_n(row.adopted.n)}; the estimate is {told}"
         else:
-            told += f", spread of choices {show_n(spread.p16)} to {show_n(spread.p84)}"
+            told += f", spread of choices {show_n(spread.p05)} to {show_n(spread.p95)}"
     name = printable(row.reach.reach)
     name = f"{name}, {line.part_word}" if row.part else name
     # The names stand in the list too: the numbers are what must not be cut.
