@@ -17,10 +17,13 @@ from roughness.screens.pick import Pick
 from roughness.screens.walk_form import WalkForm
 from roughness.survey.choices import Measured
 from roughness.survey.stream import Visit
-from roughness.survey.words import Bank
+from roughness.survey.words import Bank, Setting
 from roughness.trail.data import Gate, SegmentShare
 
-_USUAL_SHARES = "bed 60, banks 40"
+_USUAL_SHARES: dict[Setting, str] = {
+    "channel": "bed 60, banks 40",
+    "flood-plain": "meadow 60, trees 40",
+}
 _SEGMENT = re.compile(r"(.+?)[\s:]+(\d+(?:\.\d+)?)\s*%?")
 _BANKS: dict[str, Bank] = {"in bank": "in bank", "over bank": "over bank"}
 _MEASURED: tuple[tuple[str, str, Quantity], ...] = (
@@ -37,7 +40,11 @@ _HINTS: dict[Quantity, str] = {
     "size": "such as 34 mm or 1.3 in; empty: not known",
     "slope": "such as 0.002 or 0.2 %; empty: not known",
 }
-_UNKNOWN, _ONE, _APART = "not known", "is enough", "no: bed and banks apart"
+_UNKNOWN, _ONE = "not known", "is enough"
+_APART: dict[Setting, str] = {
+    "channel": "no: bed and banks apart",
+    "flood-plain": "no: strips apart",
+}
 
 
 class GateForm(WalkForm):
@@ -60,7 +67,10 @@ class GateForm(WalkForm):
             set_gate(gate_from(place, typed))
             return True
 
-        self._suggested = _USUAL_SHARES
+        self._is_channel = place.part.setting == "channel"
+        own = place.state.gate if place.state else None
+        # Shares of another flow condition go with its depth: here they are a suggestion.
+        self._suggested = _shares(place) if own is None else _USUAL_SHARES[place.part.setting]
         where = f"{printable(place.part.part)}, {printable(place.condition.condition)}"
         says = "Enter goes on; what is not known stays empty. ↓ reaches what was measured."
         super().__init__(
@@ -85,7 +95,7 @@ class GateForm(WalkForm):
 
     @property
     def _apart(self) -> bool:
-        return self.query_one("#apart", Pick).value == _APART
+        return self.query_one("#apart", Pick).value != _ONE
 
     def on_pick_changed(self) -> None:
         """Ask for shares only where bed and banks are told apart."""
@@ -104,8 +114,8 @@ class GateForm(WalkForm):
 
     def _suggested_shares(self) -> str:
         depth, width = (self._length(f"#{key}") for key in ("depth_m", "width_m"))
-        if not depth or not width:
-            return _USUAL_SHARES
+        if not depth or not width or not self._is_channel:
+            return self._suggested
         # Wetted bed over bed and two upright banks: a rectangle of this width and depth.
         bed = int(rounded(100 * width / (width + 2 * depth), 0))
         return f"bed {bed}, banks {100 - bed}"
@@ -142,7 +152,7 @@ def gate_from(place: Place, values: Mapping[str, str]) -> Gate:
         bank=_BANKS.get(values["bank"]),
         mobile_sand={"yes": True, "no": False}.get(sand),
         visit=values.get("visit") or None,
-        segments=shares_from(values["shares"]) if values["apart"] == _APART else None,
+        segments=shares_from(values["shares"]) if values["apart"] != _ONE else None,
         measured=kept if kept != Measured() else None,
     )
 
@@ -211,16 +221,21 @@ def _fields(place: Place, visits: Sequence[Visit]) -> list[Field]:
 
 
 def _fields_of_segments(place: Place) -> list[Field]:
-    shares = ", ".join(f"{s.name} {show_value(s.perimeter_percent)}" for s in place.segments)
+    apart = _APART[place.part.setting]
     return [
         Field(
             key="apart",
             label="One n",
-            value=_APART if place.segments else _ONE,
-            choices=(_ONE, _APART),
+            value=apart if place.segments else _ONE,
+            choices=(_ONE, apart),
         ),
-        Field(key="shares", label="% wetted perimeter", value=shares or _USUAL_SHARES),
+        Field(key="shares", label="% wetted perimeter", value=_shares(place)),
     ]
+
+
+def _shares(place: Place) -> str:
+    shares = ", ".join(f"{s.name} {show_value(s.perimeter_percent)}" for s in place.segments)
+    return shares or _USUAL_SHARES[place.part.setting]
 
 
 def _measured_fields(place: Place) -> list[Field]:

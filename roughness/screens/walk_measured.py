@@ -178,7 +178,9 @@ def _fields(place: Place, factor: Factor, known: Choice) -> list[Field]:
 
 
 def _prefilled(place: Place, known: Choice, key: str) -> str:
-    """Return what the gate knows already about plants."""
+    """Return what the gate knows already about plants and the grain of the bed."""
+    if isinstance(known, BaseChoice) and key == "d50_mm" and not place.segments:
+        return _shown(place.measured.d50_mm, "size")
     if not isinstance(known, VegetationChoice):
         return ""
     told = {"depth_m": place.depth_m, "vegetation_height_m": place.measured.vegetation_height_m}
