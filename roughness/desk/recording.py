@@ -25,7 +25,7 @@ from roughness.survey.words import Factor
 from roughness.trail.data import CarriedFrom, Gate
 from roughness.trail.lines import Line
 from roughness.trail.naming import file_name_for, reach_trail
-from roughness.trail.reading import Trail
+from roughness.trail.reading import Trail, read_trail
 from roughness.trail.writing import Kept, append, begin
 
 _LARGEST_N = 10.0
@@ -106,10 +106,21 @@ class Recorder:
         path = reach_trail(self.survey.folder, file)
         path.parent.mkdir(exist_ok=True)
         first = {"format": 1, "survey": survey_id, "reach": name}
-        begun = begin(path, first, by=self.by, at=now(), lock=self.survey.lock)
-        self._took(path, begun)
-        noted = said(reach) | {"reach": name, "file": file, "first_line": begun.line.hash}
+        line = self._begun_before(path, first)
+        if line is None:
+            begun = begin(path, first, by=self.by, at=now(), lock=self.survey.lock)
+            self._took(path, begun)
+            line = begun.line
+        noted = said(reach) | {"reach": name, "file": file, "first_line": line.hash}
         return self._say_of_survey("reach", noted)
+
+    @staticmethod
+    def _begun_before(path: Path, first: Mapping[str, Any]) -> Line | None:
+        """Return the first line of a reach that was taken back: it goes on with its own trail."""
+        trail = read_trail(path) if path.exists() else None
+        if trail is None or trail.broken or not trail.lines or trail.lines[0].data != first:
+            return None
+        return trail.lines[0]
 
     def note_heads(self, why: str) -> Line | None:
         """Note the last line of every reach's trail, so that a cut before it is seen."""

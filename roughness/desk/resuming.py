@@ -37,7 +37,7 @@ def left_unfinished(survey: SurveyFolder) -> LeftAt | None:
     return _latest(
         (place, at)
         for place, at in begun
-        if place_of(survey, at.reach, at.part, at.condition).missing
+        if open_question(place_of(survey, at.reach, at.part, at.condition)) is not None
     )
 
 
