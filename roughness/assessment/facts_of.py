@@ -1,6 +1,7 @@
 """The facts of one judgement, laid out as the columns that the findings look at."""
 
 from collections.abc import Mapping
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
@@ -8,6 +9,7 @@ import numpy as np
 from roughness.assessment.resolving import Resolved, criterion_numbers, noted
 from roughness.findings import FactorFacts, Facts, nothing_chosen
 from roughness.handbook import Candidates, Handbook, candidates, gap_around
+from roughness.quantities.foreign_text import same_name_key
 from roughness.quantities.ranges import Range
 from roughness.survey.choices import CHOICES, Measured
 from roughness.survey.words import Factor, Setting
@@ -26,6 +28,8 @@ def facts_of(
 
     ``resolved`` is empty for a part as a whole whose segments have rows of their own.
     """
+    if segment is not None and "bed" not in same_name_key(segment):
+        measured = replace(measured, d50_mm=None)  # a size of the bed, and not of the banks
     factors = {
         factor: _factor_facts(handbook, setting, entry, measured)
         for factor, entry in resolved.items()
