@@ -54,6 +54,8 @@ class WalkScreen(Screen[None]):
     """
 
     CSS_PATH = "walk.tcss"
+    lead: ClassVar[str] = ""
+    """Stands before where somebody is."""
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("enter", "take", "take"),
         Binding("enter", "go_on", "on"),
@@ -179,7 +181,7 @@ class WalkScreen(Screen[None]):
         place = self.course.place
         gate = place.state.gate if place.state else None
         words = [place.reach.reach, place.part.part, place.condition.condition]
-        line = Text(" › ".join(printable(word) for word in words), style="bold")
+        line = Text(self.lead + " › ".join(printable(word) for word in words), style="bold")
         if place.depth_m is not None:
             line.append(f", {show_value(place.depth_m)} m deep")
         if gate and gate.bank:
@@ -214,7 +216,8 @@ class WalkScreen(Screen[None]):
             return Text("⏎ on to the open factor", style="bold")
         if parts:
             return Text(f"⏎ on to {printable(parts[0])}   Esc back to the survey", style="bold")
-        return Text("All parts of this reach are done. Esc back to the survey", style="bold")
+        told = "All parts of this reach are done. Esc back to the survey; + there adds parts"
+        return Text(told, style="bold")
 
     # -- keys -------------------------------------------------------------------------------
 

@@ -85,9 +85,9 @@ def _heading(place: Place, width: int) -> Text:
     standing = [place.at(*question) for question in place.questions]
     legend = []
     if any(s and s.carried_from and not s.inherited_from for s in standing):
-        legend.append(f"{CARRIED} carried, not confirmed")
+        legend.append(f"{CARRIED} to confirm")
     if any(s and s.inherited_from for s in standing):
-        legend.append(f"{INHERITED} from the other condition")
+        legend.append(f"{INHERITED} other condition")
     line = Text(f" {'perimeter:':{_FACTOR - 1}}{''.join(cells).rstrip()}", style="dim")
     if legend:
         line.append(f"  {', '.join(legend)}")
@@ -144,7 +144,7 @@ def origin_of(standing: Standing) -> str:
         return f"from {printable(standing.inherited_from)}"
     if standing.carried_from:
         origin = standing.carried_from
-        return f"carried from {printable(origin.reach)}, not confirmed"
+        return f"to confirm, from {printable(origin.reach)}"
     return ""
 
 

@@ -156,7 +156,7 @@ async def test_a_whole_part_is_carried_over_and_confirmed_one_by_one(open_walk: 
         assert "Weir pool, main channel: n" in someone.text
         await someone.press("enter")
         assert len(someone.place.unconfirmed) == 6
-        assert "carried from Weir pool, not confirmed" in someone.text
+        assert "to confirm, from Weir pool" in someone.text
         await someone.press("enter")
         assert len(someone.place.unconfirmed) == 5
         await someone.press(*["enter"] * 5)
@@ -171,7 +171,7 @@ async def test_one_factor_is_carried_over_and_stays_at_hand(open_walk: Any) -> N
         await someone.press("c")
         assert someone.grade("base") == "cobble"
         assert someone.place.unconfirmed == ("base",)
-        assert "Carried from Weir pool, not confirmed: ⏎ confirms it" in someone.flat
+        assert "To confirm, from Weir pool: ⏎ confirms it" in someone.flat
         await someone.press("5")
         assert someone.grade("base") == "gravel"
         assert someone.place.unconfirmed == ()
