@@ -95,12 +95,16 @@ class Form(ModalScreen[T | None], Generic[T]):
                         yield _widget_of(field)
                 yield Take(Text(f"[ {self._does} ]"), id="take")
             yield Static("", id="wrong")
-            yield Static(Text("Tab ↑↓ move   ⏎ next, at the end: take   Esc leave"), id="keys")
+            yield Static(Text("Tab ↑↓ move   ⏎ next, in the last: take   Esc leave"), id="keys")
 
     def on_mount(self) -> None:
         """Start in the first field that is still empty."""
         empty = next((f for f in self._fields if not f.value and not f.choices), self._fields[0])
         self.query_one(f"#{empty.key}").focus()
+
+    def on_screen_resume(self) -> None:
+        """Take away the messages that would lie over the fields."""
+        self.app.clear_notifications()
 
     def check_action(self, action: str, _: tuple[object, ...]) -> bool | None:
         """Leave Enter to a field of many lines."""

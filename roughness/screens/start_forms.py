@@ -95,7 +95,7 @@ def new_form(by: str, folder: str = "") -> Form[Path]:
             Field(
                 key="reaches",
                 label="Reaches, typed",
-                hint="one a line, from upstream to downstream",
+                hint="one name a line, from upstream to downstream",
                 many_lines=True,
             ),
         ],

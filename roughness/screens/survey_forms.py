@@ -47,9 +47,9 @@ def condition_form(pen: Recorder) -> Form[str]:
         [
             Field(key="name", label="Name", hint="such as: design flood, leaf-on"),
             Field(key="growth", label="Growth", value="any", choices=GROWTHS),
-            Field(key="bank", label="The water stays", value=_UNKNOWN, choices=tuple(_BANKS)),
+            Field(key="bank", label="The water is", value=_UNKNOWN, choices=tuple(_BANKS)),
             Field(key="discharge", label="Discharge, m3/s", hint="leave empty if not known"),
-            Field(key="tolerance", label="Level matters to, cm", value=f"{USUAL_TOLERANCE_CM:g}"),
+            Field(key="tolerance", label="Level needed to ± cm", value=f"{USUAL_TOLERANCE_CM:g}"),
         ],
         take,
         says="What the n is for. Ice and debris jams are outside the method.",
@@ -135,17 +135,23 @@ def reach_form(pen: Recorder) -> Form[str]:
                     note=text_or_none(typed["note"]),
                 ),
             )
+            typed_lengths = found[0].reach_from is not None or found[0].reach_to is not None
+            if typed_lengths and known and not pen.survey.state.described.length_unit:
+                pen.describe(length_unit=known)
         for reach in found:
             pen.add_reach(reach)
         return found[0].reach
 
-    unit = pen.survey.state.described.length_unit or "m"
+    # Lengths that came with a list in no unit may be anything: then the form claims none either.
+    has_lengths = any(noted.reach_to is not None for noted in pen.survey.state.reaches)
+    known = pen.survey.state.described.length_unit or ("" if has_lengths else "m")
+    unit = f", {known}" if known else ""
     return Form(
         "New reach",
         [
             Field(key="name", label="Name", hint="such as: Osier bend"),
-            Field(key="from", label=f"From, {unit}", hint="distance along the stream"),
-            Field(key="to", label=f"To, {unit}"),
+            Field(key="from", label=f"From{unit}", hint="distance along the stream"),
+            Field(key="to", label=f"To{unit}", hint="a number, as in the list: 320"),
             Field(key="slope", label="Slope", hint="2 in a thousand is 0.002"),
             Field(key="note", label="Note", hint="why n may jump here, for instance"),
             Field(key="file", label="Or from a file", hint="CSV or GeoJSON with many reaches"),
@@ -187,7 +193,7 @@ def adopt_form(pen: Recorder, line: SurveyLine) -> Form[str]:
             ),
         ],
         take,
-        says=f"{told}It stays beside what you adopt.",
+        says=f"{printable(condition)}. {told}It stays beside what you adopt.",
         does="adopt it",
     )
 
