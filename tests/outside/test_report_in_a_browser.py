@@ -4,6 +4,7 @@ Skipped where there is no Chromium; its print to PDF is read with poppler's tool
 are there.
 """
 
+import json
 import re
 import shutil
 import socket
@@ -15,10 +16,13 @@ from pathlib import Path
 import pytest
 
 from roughness.desk.folder import SurveyFolder
+from roughness.desk.making import new_survey
+from roughness.desk.recording import Recorder
 from roughness.desk.rows import rows
 from roughness.reports.field_sheet import field_sheet
 from roughness.reports.survey_report import survey_report
 from roughness.shelf.places import demo_folder
+from roughness.survey.stream import Reach
 
 BROWSER = shutil.which("chromium") or shutil.which("chromium-browser")
 pytestmark = pytest.mark.skipif(BROWSER is None, reason="no chromium here")
@@ -117,3 +121,43 @@ def test_a_sheet_takes_at_most_two_pages_a_reach(folder: Path, survey: SurveyFol
     assert [next(n for n in names if n in pages[at].split("\n")[0]) for at in first] == names
     ends = [*first[1:], len(pages)]
     assert all(end - begin <= 2 for begin, end in zip(first, ends, strict=True))
+
+
+def test_the_longest_names_and_notes_stay_on_the_paper(folder: Path) -> None:
+    if shutil.which("pdftotext") is None:
+        pytest.skip("no pdftotext here")
+    reach, part, condition = "r" * 120, "p" * 120, "c" * 120
+    pen = Recorder(new_survey(folder / "long", "A" * 120, reaches=[Reach(reach=reach)]), "A" * 120)
+    pen.record(
+        reach,
+        json.dumps(
+            {
+                "part": part,
+                "condition": condition,
+                "handbook": "usgs-wsp-2339",
+                "setting": "channel",
+                "factors": {
+                    "base": {"grade": "gravel", "note": "x" * 2000},
+                    "irregularity": {"grade": "minor"},
+                    "variation": {"grade": "gradual"},
+                    "obstruction": {"grade": "minor"},
+                    "vegetation": {"grade": "small"},
+                    "meander": {"grade": "minor"},
+                },
+            }
+        ).encode(),
+        "test",
+    )
+    (folder / "long.html").write_bytes(survey_report(pen.survey, rows(pen.survey)))
+    whole = "".join("".join(text_on_paper(folder, folder / "long.html")).split())
+    assert whole.count("x") >= 4000  # in the ledger and in the reasoning
+    boxes = subprocess.run(
+        ["pdftotext", "-bbox", str(folder / "long.pdf"), "-"],
+        capture_output=True,
+        text=True,
+        check=True,
+    ).stdout
+    width = float(re.findall(r'<page width="([0-9.]+)"', boxes)[0])
+    right = [float(edge) for edge in re.findall(r'xMax="([0-9.]+)"', boxes)]
+    assert len(right) > 300
+    assert max(right) <= width - 30  # a margin of 13 mm is 37 points
