@@ -73,7 +73,7 @@ class HandbookScreen(Screen[None]):
         )
         yield OptionList(id="rows", compact=True)
         yield Static("", id="row")
-        yield KeyLine("⏎ about it")
+        yield KeyLine("←→ factor  ⏎ about it")
 
     def on_mount(self) -> None:
         """Show the first table."""

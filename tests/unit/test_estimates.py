@@ -130,6 +130,21 @@ def test_bed_and_banks_come_together_by_equal_velocity() -> None:
     assert {entry.segment for entry in result.factors} == {"bed", "banks"}
 
 
+def test_the_grain_of_the_bed_says_nothing_about_the_banks() -> None:
+    gravel = copy.deepcopy(GOOD["factors"]) | {"base": {"grade": "gravel"}}
+    soil = copy.deepcopy(GOOD["factors"]) | {"base": {"grade": "firm-soil"}}
+    for bed, banks, contradicted in ((gravel, soil, False), (soil, gravel, True)):
+        document = {key: value for key, value in GOOD.items() if key != "factors"}
+        document["measured"] = {"d50_mm": 40}
+        document["handbook"] = "usgs-wsp-2339"
+        document["segments"] = [
+            {"name": "bed", "perimeter_percent": 60, "factors": bed},
+            {"name": "banks", "perimeter_percent": 40, "factors": banks},
+        ]
+        found = [f.rule for f in estimate(document).findings if "D50" in f.says]
+        assert found == (["grade-against-criterion"] if contradicted else [])
+
+
 def test_equal_segments_give_the_n_of_the_undivided_part() -> None:
     whole, halves = estimate(GOOD), segmented(GOOD["factors"], GOOD["factors"], 50)
     assert halves.n.best == pytest.approx(whole.n.best, rel=1e-12)

@@ -128,6 +128,18 @@ def test_a_withdrawn_line_has_no_effect_but_stays(pen: Recorder) -> None:
     assert line.hash in pen.survey.reach_trail("Weir").by_hash
 
 
+def test_a_reach_that_was_taken_back_can_be_added_again(pen: Recorder) -> None:
+    noted = pen.add_reach(Reach(reach="Ford"))
+    pen.withdraw(None, noted)
+    assert pen.survey.state.reach("Ford") is None
+    pen.add_reach(Reach(reach="Ford", slope=0.004))
+    again = SurveyFolder(pen.survey.folder)
+    found = again.state.reach("Ford")
+    assert found is not None and found.slope == 0.004
+    assert len(again.reach_trail("Ford").lines) == 1
+    assert check(again).intact
+
+
 def test_a_used_handbook_is_copied_into_the_survey_once(pen: Recorder) -> None:
     pen.record("Weir", raw(), "file")
     (copy,) = pen.survey.handbooks.glob("*.toml")

@@ -150,3 +150,17 @@ async def test_a_full_survey_folder_that_cannot_be_written_to_says_so(
         await keyboard.press("end", "enter")
         assert keyboard.screen == "SurveyScreen"
         assert "is not there" in keyboard.words
+
+
+async def test_lengths_typed_as_metres_are_recorded_as_metres(
+    open_app: Any, survey: SurveyFolder
+) -> None:
+    async with open_app(survey.folder) as keyboard:
+        await keyboard.press("plus", "4")
+        assert "From, m" in keyboard.text
+        await keyboard.type("Ford\n320\n700\n0.004\n\n\n")
+        assert keyboard.screen == "SurveyScreen", keyboard.text
+    state = SurveyFolder(survey.folder).state
+    ford = state.reach("Ford")
+    assert state.described.length_unit == "m"
+    assert ford is not None and (ford.reach_from, ford.reach_to) == (320, 700)

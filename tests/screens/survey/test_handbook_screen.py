@@ -25,6 +25,18 @@ async def test_a_table_shows_its_rows_with_range_criterion_and_source(
         assert "seen second hand" in keyboard.words
 
 
+async def test_the_last_line_names_every_key_once_on_eighty_columns(
+    open_app: Any, survey: SurveyFolder
+) -> None:
+    async with open_app(survey.folder) as keyboard:
+        await keyboard.press("h")
+        last = keyboard.text.splitlines()[-1]
+        for told in ("⏎ about it", "←→ factor", "b handbook", "/ search", "Esc back", "? help"):
+            assert last.count(told) == 1, last
+        await keyboard.press("question_mark")
+        assert keyboard.text.splitlines()[-1].count("Esc back") == 1
+
+
 async def test_after_the_channel_come_the_flood_plains(open_app: Any, survey: SurveyFolder) -> None:
     async with open_app(survey.folder) as keyboard:
         await keyboard.press("h", "left")
