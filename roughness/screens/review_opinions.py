@@ -24,15 +24,8 @@ from roughness.screens.review_consensus import consensus_form
 from roughness.screens.typed import text_or_none
 from roughness.trail.naming import file_name_for
 
-_ENTRIES: Final = (
-    "write the blind file for another person",
-    "take a filled file in",
-    "first and second side by side",
-    "record what was agreed on",
-    "agreement over the survey",
-)
-_WRITE, _TAKE, _BESIDE, _AGREE, _SURVEY = range(5)
 _NONE_YET: Final = "Nobody gave a second opinion here yet."
+_Step = Callable[[], Awaitable[str | None]]
 
 
 class Opinions:
@@ -63,7 +56,7 @@ class Opinions:
         """Offer what can be done."""
         self._screen.run_worker(self._said(self._offer), exclusive=True, group="dialog")
 
-    async def _said(self, steps: Callable[[], Awaitable[str | None]]) -> None:
+    async def _said(self, steps: _Step) -> None:
         try:
             told = await steps()
         except RoughnessError as error:
@@ -77,21 +70,29 @@ class Opinions:
 
     async def _offer(self) -> str | None:
         row = self._row()
+        told, steps = zip(*self._entries(row), strict=True)
+        says = ""
+        if row is not None and row.place is not None:
+            count = len(row.review.opinion_of_each)
+            says = f"{named(row)}. "
+            says += f"Second opinions so far: {count}." if count else _NONE_YET
+        picked = await self._ask(Menu("Second opinion", told, says=says))
+        return None if picked is None else await steps[picked]()
+
+    def _entries(self, row: Row | None) -> list[tuple[str, _Step]]:
+        """Return what can be done; without a place only what is about the whole survey."""
+        take = ("take a filled file in", self._take)
+        over = ("agreement over the survey", self._over_survey)
         if row is None or row.place is None:
-            raise InputError("there is nothing here that could be judged twice")
-        count = len(row.review.opinion_of_each)
-        says = f"{named(row)}. "
-        says += f"Second opinions so far: {count}." if count else _NONE_YET
-        picked = await self._ask(Menu("Second opinion", _ENTRIES, says=says))
-        if picked == _WRITE:
-            return await self._write(row.place)
-        if picked == _TAKE:
-            return await self._take()
-        if picked == _BESIDE:
-            return await self._beside(row)
-        if picked == _AGREE:
-            return await self._consensus(row)
-        return await self._over_survey() if picked == _SURVEY else None
+            return [take, over]
+        place = row.place
+        return [
+            ("write the blind file for another person", lambda: self._write(place)),
+            take,
+            ("first and second side by side", lambda: self._beside(row)),
+            ("record what was agreed on", lambda: self._consensus(row)),
+            over,
+        ]
 
     async def _write(self, place: Place) -> str | None:
         survey = self._pen.survey
