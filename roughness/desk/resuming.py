@@ -28,17 +28,24 @@ def left_at(survey: SurveyFolder) -> LeftAt | None:
 
 
 def left_unfinished(survey: SurveyFolder) -> LeftAt | None:
-    """Return the part that was begun last and still has open questions, if there is one."""
+    """Return the part that was worked on last if something is open in it.
+
+    Open is a question nobody answered or a choice nobody confirmed. Where nothing is, the part
+    that was begun last and still lacks answers; None where all have them.
+    """
+    last = left_at(survey)
+    if last is not None and open_question(_place(survey, last)) is not None:
+        return last
     begun = (
         (place, LeftAt(name, place.part, place.condition))
         for name, state in _readable(survey)
         for place in state.places.values()
     )
-    return _latest(
-        (place, at)
-        for place, at in begun
-        if open_question(place_of(survey, at.reach, at.part, at.condition)) is not None
-    )
+    return _latest((place, at) for place, at in begun if _place(survey, at).missing)
+
+
+def _place(survey: SurveyFolder, at: LeftAt) -> Place:
+    return place_of(survey, at.reach, at.part, at.condition)
 
 
 def _readable(survey: SurveyFolder) -> Iterator[tuple[str, ReachState]]:

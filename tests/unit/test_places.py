@@ -112,12 +112,14 @@ def test_carried_choices_are_marked_until_confirmed(pen: Recorder) -> None:
     carry_part(pen, lower, source)
     lower = place_of(pen.survey, "Lower", CHANNEL, FLOOD)
     assert len(lower.unconfirmed) == 6 and open_question(lower) == (None, "base")
+    assert left_unfinished(SurveyFolder(pen.survey.folder)) == LeftAt("Lower", CHANNEL, FLOOD)
     row = next(r for r in rows(pen.survey) if r.reach.reach == "Lower" and r.estimate)
     assert "carried-over-unconfirmed" in [finding.rule for finding in row.findings]
     for question in lower.questions:
         confirm(pen, lower, question)
     lower = place_of(pen.survey, "Lower", CHANNEL, FLOOD)
     assert not lower.unconfirmed and open_question(lower) is None
+    assert left_unfinished(pen.survey) is None
 
 
 def test_the_other_plain_is_a_source_and_a_channel_is_none(pen: Recorder) -> None:
