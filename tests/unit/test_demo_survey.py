@@ -3,17 +3,18 @@
 import os
 import re
 import stat
-from collections.abc import Iterator
 from itertools import pairwise
 from pathlib import Path
 
 import pytest
 
 from roughness.desk.checking import Checked, check
+from roughness.desk.evidence_lists import evidence_of
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.making import copy_demo
 from roughness.desk.recording import Recorder
 from roughness.desk.rows import Row
+from roughness.desk.weakness import order
 from roughness.findings import rule_table
 from roughness.shelf.places import demo_folder
 from roughness.survey.stream import Visit
@@ -76,9 +77,28 @@ def test_two_flow_conditions_differ_in_growth_and_bank(survey: SurveyFolder) -> 
     assert flood.discharge_m3s > spring.discharge_m3s
 
 
-def test_some_reaches_are_unfinished(checked: Checked) -> None:
+def test_every_status_of_a_review_is_met(checked: Checked) -> None:
     statuses = {row.status for row in checked.rows}
-    assert statuses == {"estimated", "incomplete", "unvisited"}
+    assert statuses == {
+        "unvisited",
+        "incomplete",
+        "estimated",
+        "in review",
+        "returned",
+        "accepted",
+        "changed since acceptance",
+    }
+
+
+def test_nobody_accepted_what_they_estimated_themselves(checked: Checked) -> None:
+    accepted = [row for row in checked.rows if row.status == "accepted"]
+    assert accepted and all(row.reviewed_by != row.estimated_by for row in accepted)
+
+
+def test_its_pictures_are_there_and_said_to_be_drawn(survey: SurveyFolder) -> None:
+    items = [i for r in survey.state.reaches for i in evidence_of(survey, r.reach)]
+    assert len(items) == 3
+    assert all(i.held == "ok" and "invented" in (i.evidence.caption or "") for i in items)
 
 
 # What a hydrologist would expect of each kind of reach: textbook ranges, common practice,
@@ -144,17 +164,70 @@ WEAK_ON_PURPOSE = {
 }
 
 
-def findings_of(checked: Checked) -> Iterator[tuple[str, str]]:
-    for row in checked.rows:
-        for finding in row.findings:
-            yield finding.level, finding.rule
+# Every finding of every row, as it was planted.
+PLANTED = {
+    ("Sand flats", MAIN_CHANNEL, FLOOD): "jump-between-neighbours outside-published-range-noted",
+    ("Sand flats", MAIN_CHANNEL, SPRING): "jump-between-neighbours outside-published-range-noted",
+    ("Below the old weir", MAIN_CHANNEL, FLOOD): "outside-published-range-noted regime-not-settled",
+    (
+        "Below the old weir",
+        MAIN_CHANNEL,
+        SPRING,
+    ): "outside-published-range-noted regime-not-settled",
+    ("Meadow bends", MAIN_CHANNEL, FLOOD): "average-base-with-irregularity",
+    ("Meadow bends", "right flood plain", FLOOD): "carried-over-unconfirmed",
+    ("Meadow bends", MAIN_CHANNEL, SPRING): "average-base-with-irregularity",
+    (
+        "Hay meadow",
+        MAIN_CHANNEL,
+        FLOOD,
+    ): "bends-counted-twice driver-without-reason near-class-edge",
+    ("Hay meadow", "left flood plain", FLOOD): "near-class-edge",
+    ("Hay meadow", "right flood plain", FLOOD): "driver-without-reason outside-published-range",
+    ("Hay meadow", MAIN_CHANNEL, SPRING): "bends-counted-twice near-class-edge",
+    ("Willow bend", MAIN_CHANNEL, FLOOD): "average-base-with-irregularity",
+    ("Willow bend", MAIN_CHANNEL, SPRING): "average-base-with-irregularity",
+    ("Gravel run", MAIN_CHANNEL, FLOOD): "growth-differs",
+    ("Alder wood", MAIN_CHANNEL, FLOOD): "slope-little-tested",
+    ("Alder wood", MAIN_CHANNEL, SPRING): "slope-little-tested",
+    ("Carr", "left flood plain", FLOOD): "handbook-handed-over",
+    (
+        "Culvert approach",
+        MAIN_CHANNEL,
+        FLOOD,
+    ): (
+        "average-base-with-irregularity driver-without-reason grade-against-criterion"
+        " slope-little-tested widening-counted-twice"
+    ),
+    (
+        "Culvert approach",
+        MAIN_CHANNEL,
+        SPRING,
+    ): (
+        "average-base-with-irregularity driver-without-reason"
+        " slope-little-tested widening-counted-twice"
+    ),
+    ("Cobble riffles", MAIN_CHANNEL, FLOOD): "slope-little-tested",
+    ("Cobble riffles", MAIN_CHANNEL, SPRING): "near-class-edge slope-little-tested",
+    ("Boulder steps", MAIN_CHANNEL, FLOOD): "few-grains-deep slope-steep",
+    ("Boulder steps", MAIN_CHANNEL, SPRING): "few-grains-deep slope-steep",
+}
 
 
-def test_its_weak_points_are_found(checked: Checked) -> None:
-    found = {rule for _, rule in findings_of(checked)}
-    assert found >= WEAK_ON_PURPOSE
-    # Anything beyond the rules is about the record: an unreadable trail, a line without effect.
-    assert found <= {rule.key for rule in rule_table()}
+def test_its_findings_are_exactly_the_planted_ones(checked: Checked) -> None:
+    found = {named(r): " ".join(sorted(f.rule for f in r.findings)) for r in checked.rows if r.part}
+    assert {place: rules for place, rules in found.items() if rules} == PLANTED
+    assert {rule for rules in PLANTED.values() for rule in rules.split()} == WEAK_ON_PURPOSE
+    assert {rule.key for rule in rule_table()} >= WEAK_ON_PURPOSE
+
+
+def test_every_weak_point_comes_before_the_sound_ones_in_the_reviewers_order(
+    survey: SurveyFolder, checked: Checked
+) -> None:
+    ranked = [row for row in order(survey, list(checked.rows)) if row.estimate]
+    asked = [bool({f.level for f in row.open} & {"stop", "ask"}) for row in ranked]
+    assert ranked[0].stands_stopped
+    assert sum(asked[: sum(asked)]) >= sum(asked) - 1
 
 
 def test_one_thing_alone_must_not_be_accepted_as_it_is(checked: Checked) -> None:
