@@ -73,8 +73,8 @@ q      quit
 {WORDS}"""
 
 HANDBOOK_HELP: Final = f"""\
-The published tables. Each row has a range, what decides it in short, and below
-in full; table and page; and how the values were come by: seen in the
+The published tables. Each row has a range; what decides it, in short and
+below in full; table and page; and how the values were come by: seen in the
 publication, seen second hand (in another publication), from memory, or ours
 (common practice, no source).
 

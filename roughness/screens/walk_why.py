@@ -2,12 +2,13 @@
 
 from typing import Final
 
-from roughness.quantities.printing import show_value
+from roughness.quantities.printing import show_addend, show_value
 from roughness.screens.walk_course import Course
+from roughness.survey.words import MULTIPLIER
 
 KEYS: Final = """\
 KEYS
-1-9        take that grade and go on        ↑ ↓ and Enter   take the marked one
+1-9        take that grade and go on;  ↑ ↓ and Enter take the marked one
 ← →        move the best value in its range
 ⇧← ⇧→      widen or narrow the range (outside what is published: a note)
 =          type low, best and high
@@ -31,7 +32,7 @@ SIGNS
 n then     n with this grade, the factors to come adding nothing yet
 water      change of the water level against what stands, for a wide channel
            of this depth at the same discharge
-├─━█━─┤    thin: lowest to highest n; thick: spread of the choices (5 to 95 %);
+├─━█━─┤    thin: lowest to highest n; thick: spread of choices (5 to 95 %);
            block: best value; dots: what experienced people differ by
 
 The spread of the choices takes the grades as right: it does not hold the
@@ -48,9 +49,10 @@ def why_text(course: Course) -> str:
     table = handbook.table(place.part.setting, factor)
     lines = [f"{table.title.upper()} ({handbook.symbols[factor]})", table.question, ""]
     for grade in table.grades:
-        span = show_value(grade.low)
+        shown = show_value if factor == MULTIPLIER else show_addend
+        span = shown(grade.low)
         if grade.low != grade.high:
-            span += f" to {show_value(grade.high)}"
+            span += f" to {shown(grade.high)}"
         lines.append(f"{grade.name}, {span}: {grade.criterion} ({grade.source})")
     lines += ["", *table.notes, f"{handbook.citation}; {table.source}."]
     if place.asked_handbook != handbook.key:
