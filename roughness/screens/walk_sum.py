@@ -12,6 +12,7 @@ from roughness.screens.bars import axis, bar, people_bar
 from roughness.screens.walk_course import Course
 
 _WORDS: Final = 28
+_SHORTEST: Final = 8  # a narrower terminal cuts the words off instead
 
 
 class SumSoFar(Static):
@@ -27,7 +28,7 @@ class SumSoFar(Static):
 
 def sum_lines(course: Course, width: int) -> list[Text]:
     """Return the axis, the bar of n, and, when complete, what people differ by."""
-    long = width - _WORDS - 1
+    long = max(_SHORTEST, width - _WORDS - 1)
     ticks = Text(f"{axis(long):<{long}} ", style="dim")
     n = n_so_far(course.place)
     if n is None:

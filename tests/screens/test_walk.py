@@ -279,3 +279,18 @@ async def test_names_with_markup_and_slashes_are_shown_as_they_are(
     async with open_walk(reach="[b]Mill/race[/b] 🦆", size=size) as someone:
         await someone.press(*["enter"] * 4)
         assert "[b]Mill/race[/b] 🦆" in someone.text
+
+
+@pytest.mark.parametrize("size", [(20, 5), (10, 30), (1, 1)])
+async def test_a_terminal_made_tiny_and_large_again_does_not_end_the_walk(
+    open_walk: Any, size: Any
+) -> None:
+    async with open_walk() as someone:
+        await someone.gate()
+        await someone.press("2")
+        await someone.pilot.resize_terminal(*size)
+        await someone.press("1")
+        await someone.pilot.resize_terminal(80, 24)
+        await someone.pilot.pause()
+        assert "n so far" in someone.text
+        assert someone.grade("base") == "firm-soil"
