@@ -108,7 +108,7 @@ class ReviewScreen(Screen[None]):
         listing = self.query_one(OptionList)
         kept = at or (key_of(self.selected) if self.selected else None)
         width = max(40, self.size.width - 2)
-        columns = ListColumns.within(width - 2, others=self.places.has_opinions)
+        columns = ListColumns.within(width - 1, others=self.places.has_opinions)
         rows = self.places.rows
         listing.clear_options()
         listing.add_options(

@@ -5,6 +5,7 @@ from typing import TYPE_CHECKING, Any
 
 from textual.screen import Screen
 
+from roughness.custody.status import CHANGED, RETURNED
 from roughness.desk.history import accepted_in_words, since_acceptance
 from roughness.desk.reviewing import Reviewer
 from roughness.desk.rows import Row
@@ -21,6 +22,7 @@ from roughness.screens.review_accept import (
 )
 from roughness.screens.review_ledger import named as factor_named
 from roughness.screens.review_opinions import Opinions
+from roughness.screens.review_words import verdict
 from roughness.screens.walk_stack import capital
 from roughness.trail.telling import describe_line, withdrawable
 
@@ -151,6 +153,8 @@ class ReviewDialogs:
             told = ". ".join(capital(printable(refusal.says)) for refusal in final)
             return f"! Not accepted. {told}."
         says = what_is_accepted(row, self._reviewer.case(row).unanswered)
+        if row.status in (RETURNED, CHANGED):
+            says += f" {verdict(self._screen.survey, row)}"
         if refusals:
             done = await self._ask(overruling_form(self._reviewer, row, refusals, says))
         else:

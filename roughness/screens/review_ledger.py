@@ -39,7 +39,7 @@ class Columns:
     def within(cls, width: int, *, apart: bool) -> "Columns":
         """Return the columns for lines of ``width`` cells."""
         factor = 18 if apart else 15
-        span, long = (11, 5) if width < _WIDE else (15, 12)
+        span, long = (11, 4) if width < _WIDE else (15, 12)
         fixed = 2 + factor + _VALUE + span + _SHARE + long + _NOTE + _PHOTO + 7
         return cls(factor, span, long, max(0, width - fixed))
 
@@ -122,15 +122,14 @@ def lines_of(row: Row) -> list[Line]:
 def weightiest(row: Row, lines: Sequence[Line]) -> Line:
     """Return the factor to look at first: what stops, what asks, else what drives n."""
     factors = [line for line in lines if line.question is not None]
-    for sign in (SIGNS["stop"], SIGNS["ask"]):
-        for line in factors:
-            if line.question is not None and mark_of(row, line.question) == sign:
-                return line
-    driver = row.estimate.driver if row.estimate else None
-    for line in factors:
-        if driver and line.question in ((driver.segment, driver.factor), (None, driver.factor)):
-            return line
-    return factors[0]
+    signs = [SIGNS["stop"], SIGNS["ask"], " "]
+
+    def weight(line: Line) -> tuple[int, float]:
+        assert line.question is not None
+        share = sum(entry.share_of_variance for entry in entries(row, line.question))
+        return -signs.index(mark_of(row, line.question)), share
+
+    return max(factors, key=weight)
 
 
 def entries(row: Row, question: Question) -> list[FactorEstimate]:
@@ -261,7 +260,7 @@ def _sum_line(row: Row, items: Sequence[Evidence], width: int) -> str:
     asks: set[str] = {finding.level for finding in row.open if finding.factor is None}
     asks |= {"ask" for one in row.review.open_questions if one.question.factor is None}
     mark = next((SIGNS[level] for level in ("stop", "ask") if level in asks), " ")
-    told = sketch(row) if width >= _WIDE else sketch(row).replace(" + ", "+")
+    told = sketch(row) if width >= _WIDE else sketch(row).replace(" ", "")
     return columns.sum_line(mark, show_n(estimate.n.best), span, told, photos)
 
 

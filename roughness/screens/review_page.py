@@ -23,10 +23,15 @@ from roughness.screens.review_dialogs import ReviewDialogs
 from roughness.screens.review_head import crumbs, sum_lines, who
 from roughness.screens.review_ledger import Line, drawn, heading, lines_of, photos_of, weightiest
 from roughness.screens.review_places import Key, ReviewPlaces
+from roughness.screens.review_words import open_counts
 from roughness.survey.words import Factor
 
 _LOOK_EVERY_S: Final = 2.0
 _TALL: Final = 34
+# Where, axis and bars, heading, message, keys.
+_OTHER_LINES: Final = 7
+_MOST_WHO: Final = 4
+_LEAST_ITEM: Final = 6
 
 
 class ReviewPage(Screen[None]):
@@ -129,16 +134,23 @@ class ReviewPage(Screen[None]):
         self._lines = lines_of(row)
         self.query_one("#crumbs", Static).update(crumbs(row, self.at + 1, len(self.keys), width))
         self.query_one("#page-sum", Static).update(sum_lines(row, width))
-        self.query_one("#who", Static).update(who(self.survey, row))
-        words = heading(width - 2, apart=bool(row.place and row.place.segments))
+        told = who(self.survey, row)
+        self.query_one("#who", Static).update(told)
+        words = heading(width - 1, apart=bool(row.place and row.place.segments))
         self.query_one("#ledger-heading", Static).update(words)
         listing = self.query_one(OptionList)
+        listing.styles.height = self._room(len(told.wrap(self.app.console, width)))
         listing.clear_options()
-        listing.add_options(Option(drawn(line, row, self.items, width - 2)) for line in self._lines)
+        listing.add_options(Option(drawn(line, row, self.items, width - 1)) for line in self._lines)
         keys = [line.key for line in self._lines]
         start = keys.index(weightiest(row, self._lines).key)
         listing.highlighted = keys.index(kept) if kept in keys else start
         self._draw_item()
+
+    def _room(self, who_lines: int) -> int:
+        """Return how many lines the ledger may have, so that the marked one is told below."""
+        room = self.size.height - _OTHER_LINES - min(who_lines, _MOST_WHO) - _LEAST_ITEM
+        return max(4, min(len(self._lines), room))
 
     def _read_evidence(self) -> None:
         try:
@@ -164,8 +176,8 @@ class ReviewPage(Screen[None]):
         self._draw_item()
 
     def say(self, sentence: str = "") -> None:
-        """Show a sentence until the next key."""
-        words = " Space: all of it ──"
+        """Show a sentence until the next key; else what is open, on a rule."""
+        words = f" open: {open_counts(self.row).strip(' !?') or 'nothing'} ── Space: all of it ──"
         rule = Text(f"{'─' * max(0, self.size.width - 2 - len(words))}{words}", style="dim")
         told = Text(printable(sentence), style="bold") if sentence else rule
         self.query_one("#message", Static).update(told)

@@ -10,13 +10,12 @@ from textual.widgets import OptionList, Static
 from textual.widgets.option_list import Option
 
 from roughness.desk.folder import SurveyFolder
+from roughness.desk.history import Told, timeline
 from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.screens.help import HelpScreen
 from roughness.screens.help_texts import TIMELINE_HELP
 from roughness.screens.key_line import KeyLine
-from roughness.trail.lines import Line
-from roughness.trail.telling import describe_line
 
 
 class TimelineScreen(Screen[None]):
@@ -43,12 +42,11 @@ class TimelineScreen(Screen[None]):
         """Read the trail."""
         listing = self.query_one(OptionList)
         try:
-            lines = self._survey.reach_trail(self._reach).lines
-            withdrawn = self._survey.reach_state(self._reach).withdrawn
+            told = timeline(self._survey, self._reach)
         except RoughnessError as error:
             self.query_one("#detail", Static).update(Text(str(error)))
             return
-        self._sentences = [sentence(line, withdrawn) for line in reversed(lines)]
+        self._sentences = [sentence(one) for one in reversed(told)]
         listing.add_options(
             Option(Text(told, no_wrap=True, overflow="ellipsis")) for told in self._sentences
         )
@@ -68,8 +66,7 @@ class TimelineScreen(Screen[None]):
         self.app.push_screen(HelpScreen("Timeline", TIMELINE_HELP))
 
 
-def sentence(line: Line, withdrawn: frozenset[str]) -> str:
+def sentence(told: Told) -> str:
     """Return a line of the trail as people read it; what was taken back is said to be."""
-    at = line.at[:16].replace("T", " ")
-    gone = "taken back: " if line.hash in withdrawn else ""
-    return f"{printable(at)}  {printable(line.by)}  {gone}{describe_line(line)}"
+    gone = "taken back: " if told.withdrawn else ""
+    return f"{told.at[:16]}  {told.by}  {gone}{told.says}"
