@@ -44,8 +44,6 @@ def blind_file(survey: SurveyFolder, place: Place) -> bytes:
     depth and the slope, and an estimate to be filled in. Bed and banks told apart are a
     judgement of the first too and are left out; so are photos, whose names may tell.
     """
-    visit = visit_of(survey.reach_state(place.reach.reach), place)
-    facts = {word: getattr(visit, word) for word in _VISIT_FACTS} if visit else {}
     document = {
         "second_opinion": FORMAT,
         "about": _ABOUT,
@@ -53,7 +51,7 @@ def blind_file(survey: SurveyFolder, place: Place) -> bytes:
         "reach": place.reach.reach,
         "part": place.part.part,
         "condition": said(place.condition),
-        "visit": {word: fact for word, fact in facts.items() if fact is not None},
+        "visit": facts_of_visit(survey, place),
         "depth_m": place.depth_m,
         "slope": place.reach.slope,
         "by": "",
@@ -65,6 +63,13 @@ def blind_file(survey: SurveyFolder, place: Place) -> bytes:
         },
     }
     return (json.dumps(document, ensure_ascii=False, indent=2) + "\n").encode()
+
+
+def facts_of_visit(survey: SurveyFolder, place: Place) -> dict[str, Any]:
+    """Return what may be told of the visit: its name, date, stage, growth and flood marks."""
+    visit = visit_of(survey.reach_state(place.reach.reach), place)
+    facts = {word: getattr(visit, word) for word in _VISIT_FACTS} if visit else {}
+    return {word: fact for word, fact in facts.items() if fact is not None}
 
 
 def take_opinion(survey: SurveyFolder, raw: bytes, where: str, by: str | None = None) -> Line:
@@ -109,14 +114,25 @@ def give_opinion(
     """Record a second estimate by ``pen.by``; see :func:`take_opinion`."""
     where = where or "second opinion"
     place = pen.known_place(place.reach.reach, place.part.part, place.condition.condition)
+    refuse_first_author(pen, place, where)
+    data = _checked(pen, place, judgement, where) | ({"note": note} if note else {})
+    return pen.say_of_reach(place.reach.reach, "opinion", data)
+
+
+def refuse_first_author(pen: Recorder, place: Place, where: str = "second opinion") -> None:
+    """See that there is a first estimate, and that it is by other people than ``pen.by``.
+
+    Raises
+    ------
+    InputError
+        Where there is none, or this person has a hand in it.
+    """
     if not any(place.at(*question) for question in place.questions):
         raise InputError("there is no first estimate yet", where=where, wanted="record this as it")
     if is_among(pen.by, authors_of(pen.survey, place)):
         raise InputError(
             f"{printable(pen.by)} made the first estimate", where=where, wanted="another person"
         )
-    data = _checked(pen, place, judgement, where) | ({"note": note} if note else {})
-    return pen.say_of_reach(place.reach.reach, "opinion", data)
 
 
 def agree(

@@ -14,6 +14,7 @@ from roughness.screens.evidence import EvidenceScreen
 from roughness.screens.evidence_forms import About
 from roughness.screens.export_form import export_form, write_export
 from roughness.screens.menu import Confirm, Menu
+from roughness.screens.opinion import second_opinion
 from roughness.screens.survey_lines import SurveyLine
 from roughness.screens.timeline import TimelineScreen
 from roughness.survey.stream import Part
@@ -60,6 +61,10 @@ class Adding:
         line = self._screen.selected
         if line is not None:
             self._screen.app.push_screen(TimelineScreen(self._screen.survey, line.key[0]))
+
+    def opinion(self) -> None:
+        """Let a second person judge the selected part blind."""
+        self._run(lambda: second_opinion(self._screen))
 
     def evidence(self) -> None:
         """Open the photos and documents of the reach."""
@@ -151,8 +156,10 @@ class Adding:
             name = await self._ask(survey_forms.reach_form(pen))
             self._kept((name, "") if name else None)
         elif picked == _VISIT and line is not None:
-            await self._ask(survey_forms.visit_form(pen, line.key[0]))
+            visit = await self._ask(survey_forms.visit_form(pen, line.key[0]))
             self._kept()
+            if visit:
+                self._say(f"Visit {visit} to {line.key[0]} noted.", wrong=False)
         elif picked == _PART and line is not None:
             part = await self._first_part(line.key[0])
             self._kept((line.key[0], part) if part else None)
@@ -171,8 +178,9 @@ class Adding:
             self._say("There is nothing of yours to take back here.")
             return
         reach, line = found
+        minute = line.at[:16].replace("T", " ")
         where = f"Reach {printable(reach)}: " if reach else "The survey: "
-        told = f"{where}{describe_line(line)}.\nSaid {printable(line.at)}; the record keeps both."
+        told = f"{where}{describe_line(line)}.\nSaid {printable(minute)}; the record keeps both."
         if await self._ask(Confirm("Take this back?", told)):
             self._screen.pen.withdraw(reach, line)
             self._kept()

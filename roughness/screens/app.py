@@ -49,7 +49,11 @@ class RoughnessApp(App[None]):
         self.push_screen(self._start)
 
     async def action_quit(self) -> None:
-        """Leave the survey properly, then the program."""
+        """Leave the survey properly, then the program; a blind walk is asked about first."""
+        from roughness.screens.opinion_walk import BlindWalk
+
+        if any(isinstance(s, BlindWalk) and s.warn_before_quitting() for s in self.screen_stack):
+            return
         for screen in self.screen_stack:
             if isinstance(screen, SurveyScreen):
                 self.last_words = screen.leave()

@@ -12,6 +12,7 @@ from textual.binding import Binding, BindingType
 from textual.screen import Screen
 from textual.widgets import Input, Static
 
+from roughness.desk.places import Place
 from roughness.desk.recording import Recorder, now
 from roughness.desk.resuming import LeftAt, left_at, left_unfinished
 from roughness.errors import RoughnessError
@@ -24,6 +25,7 @@ from roughness.screens.help import HelpScreen
 from roughness.screens.help_texts import SURVEY_HELP
 from roughness.screens.key_line import KeyLine
 from roughness.screens.menu import Menu
+from roughness.screens.opinion import without_first
 from roughness.screens.reach_list import ReachList
 from roughness.screens.survey_lines import SurveyLine, SurveyLines
 
@@ -53,7 +55,7 @@ class SurveyScreen(Screen[None]):
         Binding("plus", "add", "add"),
         Binding("slash", "filter", "filter"),
         Binding("r", "review", "review"),
-        Binding("w", "weak_first", "weak first"),
+        Binding("w", "weak_first", "weak"),
         Binding("g", "adopt", "adopt"),
         Binding("u", "undo", "undo"),
         Binding("e", "export", "export"),
@@ -61,6 +63,7 @@ class SurveyScreen(Screen[None]):
         Binding("question_mark", "help", "help"),
         Binding("h", "handbook", "handbook"),
         Binding("f", "condition", "flow"),
+        Binding("o", "opinion", "second opinion"),
         Binding("l", "timeline", "timeline"),
         Binding("escape", "back", "back", show=False),
     ]
@@ -78,6 +81,7 @@ class SurveyScreen(Screen[None]):
         self._watch = FileWatch(pen.survey)
         self._adding = Adding(self)
         self.drop = DropFolder()
+        self._hidden: Place | None = None
         self._others = ""
         self._repaired, self._unlocked = pen.repaired, pen.unlocked
 
@@ -134,9 +138,16 @@ class SurveyScreen(Screen[None]):
             self.condition = names[0] if names else None
         filtered = self.query_one("#filter", Input).value
         lines = self.lines.lines(self.condition, filtered=filtered, weak_first=self._weak_first)
+        lines = [without_first(line, self._hidden) for line in lines]
         apart = self._weak_first or bool(filtered)
         self.query_one(ReachList).show(lines, names_on_every_line=apart, at=at)
         self._draw_head()
+
+    def hide(self, place: Place | None) -> None:
+        """Show nothing of a place from now on, while somebody judges it blind; None ends it."""
+        self._hidden = place
+        if self.query(ReachList):  # nothing is left to draw on when the program is left
+            self.draw()
 
     def _draw_head(self) -> None:
         width = max(20, self.size.width)
@@ -339,6 +350,10 @@ class SurveyScreen(Screen[None]):
     def action_evidence(self) -> None:
         """Open the photos and documents of the reach."""
         self._adding.evidence()
+
+    def action_opinion(self) -> None:
+        """Judge the part under the cursor blind, as a second person."""
+        self._adding.opinion()
 
     def action_timeline(self) -> None:
         """Tell who said what about the reach, the latest first."""
