@@ -249,8 +249,8 @@ def _why_wrong(factor: Factor, name: str, value: float) -> tuple[str, str] | Non
 
 
 def noted(choice: Choice) -> bool:
-    """Return whether the choice carries a note with something in it."""
-    return bool(choice.note and choice.note.strip())
+    """Return whether the choice carries a note with something to read in it."""
+    return any(sign.isprintable() and not sign.isspace() for sign in choice.note or "")
 
 
 def shown_note(choice: Choice) -> str | None:

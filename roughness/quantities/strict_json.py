@@ -2,6 +2,7 @@
 
 import json
 import math
+from collections import Counter
 from typing import Any, NoReturn
 
 from roughness.errors import InputError
@@ -73,8 +74,7 @@ def _refuse_depth(text: str, where: str) -> None:
 def _without_repeats(pairs: list[tuple[str, Any]], where: str) -> dict[str, Any]:
     found = dict(pairs)
     if len(found) < len(pairs):
-        keys = [key for key, _ in pairs]
-        twice = next(key for key in keys if keys.count(key) > 1)
+        twice, _ = Counter(key for key, _ in pairs).most_common(1)[0]
         raise InputError(
             f"the key {printable(twice)!r} stands there twice", where=where, wanted="keep one"
         )

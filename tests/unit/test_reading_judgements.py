@@ -165,3 +165,28 @@ def test_segments_must_add_to_the_whole_perimeter() -> None:
     assert "120 %" in refusal(document)
     document["segments"][1]["name"] = "Bed"
     assert "different names" in refusal(document)
+
+
+@pytest.mark.parametrize(("banks", "fits"), [(38.9, False), (39, True), (41, True), (41.1, False)])
+def test_paced_shares_of_the_perimeter_may_miss_the_whole_by_one_percent(
+    banks: float, fits: bool
+) -> None:
+    bed = {"name": "bed", "perimeter_percent": 60, "factors": GOOD["factors"]}
+    other = bed | {"name": "banks", "perimeter_percent": banks}
+    document = changed("factors", KeyError) | {"segments": [bed, other]}
+    if fits:
+        assert estimate(document).n.best > 0
+    else:
+        assert "add to" in refusal(document)
+
+
+@pytest.mark.parametrize("note", [" \t", "\u200b\u00ad", "\u202e \u2060"])
+def test_a_note_in_which_there_is_nothing_to_read_is_none(note: str) -> None:
+    found = estimate(changed("factors.base", {"grade": "gravel", "best": 0.09, "note": note}))
+    assert [f.rule for f in found.findings if f.level == "stop"] == ["outside-published-range"]
+
+
+def test_a_key_that_stands_there_twice_is_found_among_many() -> None:
+    # Counted pair by pair this takes a minute; the whole suite would stand still.
+    many = ",".join(f'"{number}":0' for number in range(90_000))
+    assert "'89999' stands there twice" in refusal(f'{{{many},"89999":1}}')
