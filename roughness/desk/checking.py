@@ -1,5 +1,6 @@
 """Whether a survey hangs together: trails, noted heads, handbooks, evidence, findings."""
 
+import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 
@@ -8,7 +9,7 @@ from roughness.desk.folder import SurveyFolder
 from roughness.desk.proving import faults_of_acceptances, faults_of_order
 from roughness.desk.rows import Row, rows
 from roughness.desk.signatures import WRONG, SignatureFound, signatures
-from roughness.errors import RoughnessError
+from roughness.errors import HandbookError, RoughnessError
 from roughness.handbook.parsing import hash_of
 from roughness.quantities.printing import enumerate_words
 from roughness.shelf.editions import shipped_editions
@@ -114,12 +115,24 @@ def _tied(
     yield from survey.reach_state(noted.reach).unusable
 
 
+def _of_file(error: HandbookError) -> Fault:
+    """Tell the file, its line and the place within it apart: a program may open the file."""
+    file, _, inside = (error.where or "handbooks").partition(": ")
+    line = re.match(r"line (\d+)", inside)
+    what = f"{error.what}; {error.wanted}"
+    return Fault(file, int(line[1]) if line else 0, f"{inside}: {what}" if inside else what)
+
+
 def _of_handbooks(survey: SurveyFolder) -> Iterator[Fault]:
-    for error in unusable_handbooks(survey.handbooks):
-        yield Fault(error.where or "handbooks", 0, f"{error.what}; {error.wanted}")
+    try:
+        folder = survey.handbooks
+    except RoughnessError as error:
+        yield Fault("handbooks", 0, str(error).removeprefix("handbooks "))
+        return
+    yield from map(_of_file, unusable_handbooks(folder))
     known = {
         key: {hash_of(path.read_bytes())} | shipped_editions().get(key, frozenset())
-        for key, path in contents(survey.handbooks).files.items()
+        for key, path in contents(folder).files.items()
     }
     for row in rows(survey):
         if row.place is None or row.place.state is None:

@@ -247,3 +247,21 @@ def test_a_changed_copy_of_a_shipped_handbook_is_found(pen: Recorder) -> None:
 def test_noted_heads_are_not_noted_twice(pen: Recorder) -> None:
     assert pen.note_heads("leaving") is not None
     assert pen.note_heads("leaving") is None
+
+
+def test_an_unusable_handbook_is_named_by_its_file_and_line(pen: Recorder) -> None:
+    (pen.survey.handbooks / "own.toml").write_text('key = "own"\nbest = = 1\n', encoding="utf-8")
+    (fault,) = check(SurveyFolder(pen.survey.folder)).broken
+    assert (fault.file, fault.line) == ("handbooks/own.toml", 2)
+    assert "not TOML" in fault.what and "column 8" in fault.what
+
+
+def test_a_linked_handbooks_folder_is_a_fault_and_hides_no_other(
+    pen: Recorder, tmp_path: Path
+) -> None:
+    path = pen.survey.reach_path("Weir")
+    path.write_bytes(path.read_bytes() + b"no line\n")
+    pen.survey.handbooks.rename(tmp_path / "elsewhere")
+    (pen.survey.folder / "handbooks").symlink_to(tmp_path / "elsewhere", target_is_directory=True)
+    faults = {fault.file: fault.what for fault in check(SurveyFolder(pen.survey.folder)).broken}
+    assert "is a link" in faults["handbooks"] and len(faults) == 2
