@@ -72,6 +72,9 @@ def complain(sentence: str) -> None:
 
 def run(words: Sequence[str]) -> int | Screens:
     """Run the command line ``words``; return the exit status, or the wish for the screens."""
+    if sys.stdout is None:  # closed by who started this: nothing is done that nobody can see
+        complain("there is no standard output; give it a place, such as /dev/null")
+        return WRONG_INPUT
     try:
         return _dispatch(words)
     except RoughnessError as error:

@@ -116,9 +116,16 @@ def _whole_or_nothing(folder: Path) -> Iterator[None]:
             _empty(folder)
         if isinstance(error, OSError):
             raise NotKeptError(
-                f"{printable(str(folder))}: {error.strerror}; nothing was made"
+                f"{printable(str(folder))}: {_why(error)}; nothing was made"
             ) from None
         raise
+
+
+def _why(error: OSError) -> str:
+    """Say why; a copy of many files tells of each, and the first one stands for all."""
+    if isinstance(error, shutil.Error) and isinstance(error.args[0], list):
+        return printable(str(error.args[0][0][-1]))
+    return error.strerror or str(error)
 
 
 def _empty(folder: Path) -> None:

@@ -156,3 +156,21 @@ def fill(ballast: Path) -> None:
                     file.write(b"x" * size)
             except OSError:
                 continue
+
+
+def test_a_demo_that_the_disk_does_not_take_says_why_and_leaves_nothing(tmp_path: Path) -> None:
+    code = (
+        "import resource, sys; from roughness.__main__ import main;"
+        "resource.setrlimit(resource.RLIMIT_FSIZE, (8192, 8192));"
+        "sys.exit(main(['demo', sys.argv[1]]))"
+    )
+    run = subprocess.run(
+        [sys.executable, "-c", code, str(tmp_path / "demo")],
+        capture_output=True,
+        text=True,
+        check=False,
+        stdin=subprocess.DEVNULL,
+        env=os.environ | {"PYTHONPATH": str(ROOT)},
+    )
+    assert run.returncode == 2 and "File too large" in run.stderr
+    assert "nothing was made" in run.stderr and list(tmp_path.iterdir()) == []

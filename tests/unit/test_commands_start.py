@@ -64,3 +64,17 @@ def test_in_a_terminal_a_survey_and_the_demo_ask_for_the_screens(
     assert isinstance(opened, commands.Screens) and isinstance(demo, commands.Screens)
     assert (opened.survey, opened.by, opened.demo) == (tmp_path, "Ann Reeve", False)
     assert (demo.survey, demo.demo) == (tmp_path / "demo", True)
+
+
+@pytest.mark.skipif(os.name == "nt", reason="a shell's way of closing")
+def test_without_standard_output_nothing_is_done_and_one_sentence_says_so(tmp_path: Path) -> None:
+    words = [sys.executable, "-m", "roughness", "new", str(tmp_path / "brook"), "--by", "Ann"]
+    run = subprocess.run(
+        ["sh", "-c", 'exec "$@" >&-', "sh", *words],
+        capture_output=True,
+        text=True,
+        check=False,
+        env=os.environ | {"PYTHONPATH": str(Path(__file__).parents[2])},
+    )
+    assert run.returncode == 2 and run.stderr.startswith("roughness: there is no standard output")
+    assert list(tmp_path.iterdir()) == []
