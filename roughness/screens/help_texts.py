@@ -121,6 +121,7 @@ Below stand the sum, what was found and what was asked.
 
 KEYS, IN THE LIST AND ON A PAGE
 Enter  open the place; on a page: answer the question or finding, read a factor
+/      in the list: show only lines with the words you type; Esc shows all again
 i      inquire: a question on the marked factor, or on the whole from any other
        line; on a question it goes on from that one
 a      accept: says first what is accepted and what speaks against it

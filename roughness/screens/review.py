@@ -4,17 +4,18 @@ import asyncio
 from typing import ClassVar, Final
 
 from rich.text import Text
-from textual import work
+from textual import on, work
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.screen import Screen
-from textual.widgets import OptionList, Static
+from textual.widgets import Input, OptionList, Static
 from textual.widgets.option_list import Option
 
+from roughness.custody.status import CHANGED
 from roughness.desk.recording import Recorder
 from roughness.desk.rows import Row
 from roughness.errors import RoughnessError
-from roughness.quantities.foreign_text import printable
+from roughness.quantities.foreign_text import printable, same_name_key
 from roughness.screens.help import HelpScreen
 from roughness.screens.help_texts import REVIEW_HELP
 from roughness.screens.key_line import KeyLine
@@ -24,9 +25,11 @@ from roughness.screens.review_opinions import Opinions
 from roughness.screens.review_page import ReviewPage
 from roughness.screens.review_places import Key, ReviewPlaces, key_of
 from roughness.screens.review_words import SIGNS, why_weak
+from roughness.screens.survey_lines import SurveyLine
 
 _LOOK_EVERY_S: Final = 2.0
 _TALL: Final = 34
+_IN_SHORT: Final = {CHANGED: "changed since"}
 
 
 class ReviewScreen(Screen[None]):
@@ -41,6 +44,7 @@ class ReviewScreen(Screen[None]):
     CSS_PATH = "review.tcss"
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("enter", "open", "open", priority=True),
+        Binding("slash", "filter", "filter"),
         Binding("o", "opinions", "opinions"),
         Binding("l", "timeline", "timeline"),
         Binding("A", "accept_all", "accept all without findings", key_display="A"),
@@ -54,12 +58,16 @@ class ReviewScreen(Screen[None]):
         self.pen, self.survey = pen, pen.survey
         self.places = ReviewPlaces(pen.survey)
         self._reading = True
+        self._shown: list[Row] = []
         self.opinions = Opinions(self, pen, lambda: self.selected, self.refresh_places)
 
     def compose(self) -> ComposeResult:
         """Lay out title, counts, list and why the selected place is weak."""
         yield Static("", id="review-title")
         yield Static("Reading the survey...", id="review-counts")
+        yield Input(
+            placeholder="words of a reach, part or status", id="review-filter", compact=True
+        )
         yield Static("", id="review-heading")
         yield OptionList(id="review-list", compact=True)
         yield Static("", id="review-detail")
@@ -68,6 +76,7 @@ class ReviewScreen(Screen[None]):
     def on_mount(self) -> None:
         """Read the survey aside: a long one takes its time."""
         self.query_one(OptionList).focus()
+        self.query_one(Input).display = False
         self._read()
         self.set_interval(_LOOK_EVERY_S, self._look)
 
@@ -100,8 +109,14 @@ class ReviewScreen(Screen[None]):
     @property
     def selected(self) -> Row | None:
         """The place under the cursor."""
-        at, rows = self.query_one(OptionList).highlighted, self.places.rows
-        return rows[at] if at is not None and at < len(rows) else None
+        at = self.query_one(OptionList).highlighted
+        return self._shown[at] if at is not None and at < len(self._shown) else None
+
+    def _filtered(self) -> list[tuple[int, Row]]:
+        """Return the rows that hold every word of the filter, with their place in the order."""
+        words = same_name_key(self.query_one(Input).value).split()
+        told = [(at, row, _text_of(row)) for at, row in enumerate(self.places.rows)]
+        return [(at, row) for at, row, text in told if all(word in text for word in words)]
 
     def draw(self, at: Key | None = None) -> None:
         """Show the list; ``at`` moves the cursor to a place."""
@@ -109,14 +124,14 @@ class ReviewScreen(Screen[None]):
         kept = at or (key_of(self.selected) if self.selected else None)
         width = max(40, self.size.width - 2)
         columns = ListColumns.within(width - 1, others=self.places.has_opinions)
-        rows = self.places.rows
+        found = self._filtered()
+        self._shown = [row for _, row in found]
         listing.clear_options()
         listing.add_options(
-            Option(list_line(i, row, self.places.weakness(row), columns))
-            for i, row in enumerate(rows)
+            Option(list_line(i, row, self.places.weakness(row), columns)) for i, row in found
         )
-        keys = self.places.keys
-        if rows:
+        keys = [key_of(row) for row in self._shown]
+        if keys:
             listing.highlighted = keys.index(kept) if kept in keys else 0
         self._draw_head(columns)
         self._draw_detail()
@@ -126,9 +141,10 @@ class ReviewScreen(Screen[None]):
         name = printable(state.described.stream or state.name)
         title = Text.assemble((f"Review › {name}", "bold"), "   weakest first", no_wrap=True)
         self.query_one("#review-title", Static).update(title)
-        told = "   ".join(f"{count} {word}" for word, count in self.places.counts().items())
-        counts = Text(told or "Nothing to review yet.", no_wrap=True, overflow="ellipsis")
-        self.query_one("#review-counts", Static).update(counts)
+        counts = self.places.counts().items()
+        told = ", ".join(f"{count} {_IN_SHORT.get(word, word)}" for word, count in counts)
+        line = Text(told or "Nothing to review yet.", no_wrap=True, overflow="ellipsis")
+        self.query_one("#review-counts", Static).update(line)
         self.query_one("#review-heading", Static).update(columns.heading)
 
     def _draw_detail(self) -> None:
@@ -161,7 +177,10 @@ class ReviewScreen(Screen[None]):
     # -- keys -------------------------------------------------------------------------------
 
     def action_open(self) -> None:
-        """Open the page of the place under the cursor."""
+        """Open the page of the place under the cursor; in the filter, go back to the list."""
+        if self.query_one(Input).has_focus:
+            self._leave_filter()
+            return
         row = self.selected
         if row is None:
             return
@@ -171,6 +190,20 @@ class ReviewScreen(Screen[None]):
             self.say(f"{name} has nothing to review yet: {first}")
             return
         self.app.push_screen(ReviewPage(self.pen, self.places, key_of(row)))
+
+    def action_filter(self) -> None:
+        """Open the filter; the list follows as it is typed."""
+        self.query_one(Input).display = True
+        self.query_one(Input).focus()
+
+    @on(Input.Changed, "#review-filter")
+    def _typed(self) -> None:
+        if not self._reading:
+            self.draw()
+
+    def _leave_filter(self) -> None:
+        self.query_one(Input).display = bool(self.query_one(Input).value)
+        self.query_one(OptionList).focus()
 
     def action_accept_all(self) -> None:
         """List what has nothing open, then accept it in one step."""
@@ -202,6 +235,14 @@ class ReviewScreen(Screen[None]):
         self.app.push_screen(HelpScreen("Review", REVIEW_HELP))
 
     def action_back(self) -> None:
-        """Leave the review."""
+        """Drop the filter, else leave the review."""
+        if self.query_one(Input).display:
+            self.query_one(Input).value = ""
+            self._leave_filter()
+            return
         self.workers.cancel_node(self)
         self.dismiss()
+
+
+def _text_of(row: Row) -> str:
+    return same_name_key(" ".join((*key_of(row), SurveyLine(row=row).part_word, row.status)))

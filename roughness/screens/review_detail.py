@@ -44,10 +44,9 @@ def _factor(row: Row, question: Question, items: Sequence[Evidence]) -> Iterator
         yield Text(f"{title}: nobody chose it yet.", style="bold")
     else:
         grade = resolved.grade
-        line = Text(f"{title}, {printable(grade.name) if grade else 'own value'}. ", style="bold")
+        named_so = f"{title}, {printable(grade.name) if grade else 'own value'}. "
         note = standing.choice.note
-        line.append(f"Note: {printable(note)} " if note else "No note. ")
-        yield line
+        yield Text.assemble((named_so, "bold"), f"Note: {printable(note)}" if note else "No note.")
         for finding in row.open:
             if finding.factor == question[1] and finding.level != "tell":
                 yield Text(f"{SIGNS[finding.level]} {finding.level}: {printable(finding.says)}")
@@ -137,8 +136,9 @@ def _sum(row: Row, items: Sequence[Evidence]) -> Iterator[Text]:
     driver = estimate.driver
     drives = named((driver.segment, driver.factor))
     share = show_share(driver.share_of_variance)
-    line = Text(f"n {show_n(estimate.n.best)} from {sketch(row)}. ", style="bold")
-    yield line + Text(f"The {drives} makes {share} of the variance.{depth}", style="not bold")
+    from_what = f"n {show_n(estimate.n.best)} from {sketch(row)}. "
+    told = f"The {drives} makes {share} of the variance.{depth}"
+    yield Text.assemble((from_what, "bold"), told)
     for thread in row.review.threads():
         if thread[0].question.factor is None:
             yield from _told(thread)
@@ -146,9 +146,15 @@ def _sum(row: Row, items: Sequence[Evidence]) -> Iterator[Text]:
     yield Text(IN_ONE_LINE)
 
 
+def reasons(row: Row) -> list[Text]:
+    """Return how n was arrived at, a sentence a step; empty where there is no n."""
+    if row.estimate is None:
+        return []
+    told = [Text(sentence) for sentence in row.estimate.reasoning]
+    return [Text("Reasoning", style="bold"), *told]
+
+
 def whole_page(row: Row, line: Line, items: Sequence[Evidence]) -> str:
-    """Return a line in full and, for the sum, every step of the reasoning, to be read."""
-    told = [detail_of(line, row, items).plain]
-    if row.estimate is not None:
-        told += ["", "Reasoning", *row.estimate.reasoning]
-    return "\n".join(told)
+    """Return a line in full and every step of the reasoning, to be read."""
+    told = [detail_of(line, row, items), Text(""), *reasons(row)]
+    return "\n".join(text.plain for text in told)

@@ -33,13 +33,13 @@ def sum_lines(row: Row, width: int) -> Text:
     ticks = Text(f"{axis(long):<{long}} ", style="dim")
     estimate, adopted = row.estimate, row.adopted.n if row.adopted else None
     if estimate is None:
-        return ticks + Text("no n yet", style="bold") + Text("\n" + ". " * (long // 2))
+        return Text.assemble(ticks, ("no n yet", "bold"), "\n" + ". " * (long // 2))
     spread, people = estimate.spread, estimate.people
     told = f"n {show_n(estimate.n.best)}  {show_range(estimate.n)}"
     drawn = bar(long, estimate.n, (spread.p05, spread.p95), None, adopted)
     says = f"spread {show_n(spread.p05)} to {show_n(spread.p95)}"
     says = f"◆ {show_n(adopted)} adopted" if adopted is not None else says
-    lines = [ticks + Text(told, style="bold"), Text(f"{drawn} {says}")]
+    lines = [Text.assemble(ticks, (told, "bold")), Text(f"{drawn} {says}")]
     if people is not None:
         dots = people_bar(long, people.p05, people.p95)
         told = f"people {show_n(people.p05)} to {show_n(people.p95)}"
@@ -49,6 +49,6 @@ def sum_lines(row: Row, width: int) -> Text:
 
 def who(survey: SurveyFolder, row: Row) -> Text:
     """Return who estimated, when and on what visit, and below who decided what."""
-    told = Text(f"{capital(who_estimated(row))}.")
     decided = verdict(survey, row)
-    return told + Text(f"\n{decided}", style="bold") if decided else told
+    below = (f"\n{decided}", "bold") if decided else ""
+    return Text.assemble(f"{capital(who_estimated(row))}.", below)

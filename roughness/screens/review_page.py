@@ -5,6 +5,7 @@ from typing import ClassVar, Final
 from rich.text import Text
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
+from textual.containers import Horizontal
 from textual.screen import Screen
 from textual.widgets import OptionList, Static
 from textual.widgets.option_list import Option
@@ -18,7 +19,8 @@ from roughness.quantities.foreign_text import printable
 from roughness.screens.help import HelpScreen
 from roughness.screens.help_texts import REVIEW_HELP
 from roughness.screens.key_line import KeyLine
-from roughness.screens.review_detail import detail_of, whole_page
+from roughness.screens.photo_picture import Picture
+from roughness.screens.review_detail import detail_of, reasons, whole_page
 from roughness.screens.review_dialogs import ReviewDialogs
 from roughness.screens.review_head import crumbs, sum_lines, who
 from roughness.screens.review_ledger import Line, drawn, heading, lines_of, photos_of, weightiest
@@ -75,6 +77,7 @@ class ReviewPage(Screen[None]):
         self.at = self.keys.index(key)
         self.items: tuple[Evidence, ...] = ()
         self._lines: list[Line] = []
+        self._said = ""
         self.dialogs = ReviewDialogs(self)
 
     def compose(self) -> ComposeResult:
@@ -85,7 +88,9 @@ class ReviewPage(Screen[None]):
         yield Static("", id="ledger-heading", markup=False)
         yield OptionList(id="ledger", compact=True)
         yield Static("", id="message", markup=False)
-        yield Static("", id="item", markup=False)
+        with Horizontal(id="lower"):
+            yield Static("", id="item", markup=False)
+            yield Picture(id="photo")
         yield KeyLine()
 
     def on_mount(self) -> None:
@@ -145,6 +150,8 @@ class ReviewPage(Screen[None]):
         keys = [line.key for line in self._lines]
         start = keys.index(weightiest(row, self._lines).key)
         listing.highlighted = keys.index(kept) if kept in keys else start
+        if not self._said:
+            self.say()
         self._draw_item()
 
     def _room(self, who_lines: int) -> int:
@@ -162,8 +169,26 @@ class ReviewPage(Screen[None]):
     def _draw_item(self) -> None:
         if self._lines:
             told = detail_of(self.line, self.row, self.items)
+            if self.has_class("-tall"):
+                told = Text("\n").join([told, Text(""), *reasons(self.row)])
             self.query_one("#item", Static).update(told)
+            self._draw_photo()
             self.refresh_bindings()
+
+    def _draw_photo(self) -> None:
+        """Show a photo of the factor, else of the part, where the window has room for it."""
+        picture = self.query_one(Picture)
+        shown = [item for item in self._evidence_here() if item.may_be_shown]
+        picture.display = self.has_class("-tall") and bool(shown)
+        if picture.display:
+            picture.show(shown[0].path)
+
+    def _evidence_here(self) -> list[Evidence]:
+        row = self.row
+        assert row.part and row.condition
+        part, condition = row.part.part, row.condition.condition
+        here = [item for item in self.items if item.supports(part, condition)]
+        return photos_of(row, self.factor, self.items) or here
 
     def on_resize(self) -> None:
         """Use the room there is."""
@@ -177,6 +202,7 @@ class ReviewPage(Screen[None]):
 
     def say(self, sentence: str = "") -> None:
         """Show a sentence until the next key; else what is open, on a rule."""
+        self._said = sentence
         words = f" open: {open_counts(self.row).strip(' !?') or 'nothing'} ── Space: all of it ──"
         rule = Text(f"{'─' * max(0, self.size.width - 2 - len(words))}{words}", style="dim")
         told = Text(printable(sentence), style="bold") if sentence else rule
@@ -240,11 +266,7 @@ class ReviewPage(Screen[None]):
         """Look at what is filed for the factor, else at everything filed for the place."""
         from roughness.screens.photo import PhotoScreen
 
-        row = self.row
-        assert row.part and row.condition
-        part, condition = row.part.part, row.condition.condition
-        here = [item for item in self.items if item.supports(part, condition)]
-        found = photos_of(row, self.factor, self.items) or here
+        found = self._evidence_here()
         if found:
             self.app.push_screen(PhotoScreen(found))
         else:

@@ -3,7 +3,7 @@
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
-from roughness.custody.status import ACCEPTED, STATUSES
+from roughness.custody.status import STATUSES
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.rows import Row, rows_of_reach, with_survey_findings
 from roughness.desk.weakness import Weakness, order, weakness
@@ -89,11 +89,6 @@ class ReviewPlaces:
         return any(row.review.opinions for row in self._rows.values())
 
     def counts(self) -> dict[str, int]:
-        """Return how many rows stand where, in the order of the way to acceptance."""
+        """Return how many rows stand where, what was accepted or changed since first."""
         found = [row.status for row in self._rows.values()]
-        return {status: found.count(status) for status in STATUSES if status in found}
-
-    @property
-    def weak(self) -> int:
-        """How many rows are still to be accepted."""
-        return sum(row.status != ACCEPTED for row in self._rows.values())
+        return {status: found.count(status) for status in STATUSES[::-1] if status in found}

@@ -15,8 +15,9 @@ from roughness.desk.weakness import order
 from roughness.shelf.places import demo_folder
 from roughness.survey.choices import Choice, ObstructionChoice
 from roughness.survey.stream import Part
+from roughness.trail.data import Gate, SegmentShare
 
-FLOOD, CHANNEL = "design flood", "main channel"
+FLOOD, CHANNEL, BOOK = "design flood", "main channel", "usgs-wsp-2339"
 BOTH_SIZES = pytest.mark.parametrize("size", [(80, 24), (120, 40)])
 
 
@@ -410,3 +411,35 @@ async def test_handbook_timeline_and_help_open_from_the_page(
             assert keyboard.screen == screen
             await keyboard.press("escape")
             assert keyboard.screen == "ReviewPage"
+
+
+async def test_the_filter_finds_what_stands_where_and_keeps_the_order(
+    open_app: Any, survey: SurveyFolder
+) -> None:
+    async with open_app(survey.folder, "Rea") as keyboard:
+        await opened_page(keyboard)
+        await keyboard.press("a", "enter", "escape", "slash")
+        await keyboard.type("accepted")
+        assert "Weir pool" in keyboard.text
+        assert "Osier bend" not in keyboard.text
+        await keyboard.press("enter", "enter")
+        assert keyboard.screen == "ReviewPage"
+        await keyboard.press("escape", "escape")
+        assert keyboard.screen == "ReviewScreen"
+        assert "Osier bend" in keyboard.text
+
+
+async def test_a_page_of_a_part_with_bed_and_banks_apart_shows_each_of_their_factors(
+    open_app: Any, pen: Recorder
+) -> None:
+    shares = (
+        SegmentShare(name="bed", perimeter_percent=60),
+        SegmentShare(name="banks", perimeter_percent=40),
+    )
+    pen.set_gate("Weir pool", Gate(part=CHANNEL, condition=FLOOD, handbook=BOOK, segments=shares))
+    async with open_app(pen.survey.folder, "Rea", size=(120, 40)) as keyboard:
+        await opened_page(keyboard)
+        for told in ("base bed", "base banks", "vegetation banks", "bed 0.0", "banks 0.0"):
+            assert told in keyboard.text
+        ledger = [line[1:22] for line in keyboard.text.splitlines()[6:20]]
+        assert sum("variation" in line for line in ledger) == 1
