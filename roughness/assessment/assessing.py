@@ -1,6 +1,7 @@
 """From a handbook and a judgement to an estimate."""
 
 from collections.abc import Mapping, Sequence
+from dataclasses import replace
 
 import numpy as np
 
@@ -21,6 +22,7 @@ from roughness.errors import InputError
 from roughness.findings import Finding
 from roughness.findings.rule import LEVELS
 from roughness.handbook import Handbook
+from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_value
 from roughness.quantities.ranges import Range
 from roughness.reasoning import sentences
@@ -197,9 +199,24 @@ def _findings(
         )
         return findings.find(facts)[0]
 
-    each = [f for z in zones for f in found(z.resolved, additive.envelope(z.ranges), z.name)]
+    of_zones = [found(z.resolved, additive.envelope(z.ranges), z.name) for z in zones]
+    each = _told_once(of_zones, [f"{printable(z.name or '')}: " for z in zones])
     whole = found({}, n, None) if len(zones) > 1 else []
     return tuple(sorted(dict.fromkeys(each + whole), key=lambda f: LEVELS.index(f.level)))
+
+
+def _told_once(of_zones: Sequence[Sequence[Finding]], names: Sequence[str]) -> list[Finding]:
+    """Return the findings of all segments; what each of them says alike loses its name."""
+    bare = [
+        [replace(finding, says=finding.says.removeprefix(name)) for finding in of_zone]
+        for of_zone, name in zip(of_zones, names, strict=True)
+    ]
+    of_all = set.intersection(*map(set, bare)) if len(bare) > 1 else set()
+    return [
+        plain if plain in of_all else named
+        for of_zone, plains in zip(of_zones, bare, strict=True)
+        for named, plain in zip(of_zone, plains, strict=True)
+    ]
 
 
 def _segment_estimates(zones: Sequence[Zone]) -> tuple[SegmentEstimate, ...] | None:

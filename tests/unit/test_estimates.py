@@ -145,6 +145,18 @@ def test_the_grain_of_the_bed_says_nothing_about_the_banks() -> None:
         assert found == (["grade-against-criterion"] if contradicted else [])
 
 
+def test_what_bed_and_banks_have_in_common_is_found_once() -> None:
+    bed = copy.deepcopy(GOOD["factors"]) | {
+        "variation": {"grade": "alternating-occasionally"},
+        "meander": {"grade": "appreciable"},
+    }
+    banks = copy.deepcopy(bed) | {"irregularity": {"grade": "moderate"}}
+    found = [f.says for f in segmented(bed, banks).findings]
+    bends = [says for says in found if "the flow shifting in the bends" in says]
+    assert len(bends) == 1 and bends[0].startswith("Variation of the section")
+    assert [says for says in found if says.startswith("banks: Irregularity adds 0.008")]
+
+
 def test_equal_segments_give_the_n_of_the_undivided_part() -> None:
     whole, halves = estimate(GOOD), segmented(GOOD["factors"], GOOD["factors"], 50)
     assert halves.n.best == pytest.approx(whole.n.best, rel=1e-12)
