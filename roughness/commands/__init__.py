@@ -32,6 +32,7 @@ VERBS: dict[str, str] = {
     "attach": "copy photos or documents of a reach into the survey",
     "adopt": "let another n than the estimate go to the model, with a reason",
     "estimate": "n, range, spread, findings and reasoning for one part",
+    "backcalc": "n of a reach from a measured flow",
     "check": "trails, handbooks and findings of a survey",
     "merge": "unite a survey with another copy of it",
     "export": "the table of n for a model: .csv or .json",

@@ -8,6 +8,8 @@ from roughness.commands.results import print_json
 NAMES = (
     "estimate",
     "estimate-output",
+    "backcalc",
+    "backcalc-output",
     "trail",
     "list",
     "check",

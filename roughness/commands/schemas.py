@@ -5,12 +5,14 @@ from typing import Any, Final
 
 from pydantic import TypeAdapter
 
+from roughness.assessment.back_calculating import FoundN
 from roughness.assessment.estimate import Estimate
 from roughness.commands.documents import CheckDocument, Listed, MergeDocument
 from roughness.exports.columns import COLUMNS
 from roughness.findings import Finding, rule_table
 from roughness.handbook.toml_shape import HandbookShape
 from roughness.survey.choices import Judgement
+from roughness.survey.measured_flow import MeasuredFlow
 from roughness.trail.kinds import trail_schema
 
 _DIALECT: Final = {"$schema": "https://json-schema.org/draft/2020-12/schema"}
@@ -88,6 +90,8 @@ def _findings() -> dict[str, Any]:
 SCHEMAS: Final[Mapping[str, Callable[[], dict[str, Any]]]] = {
     "estimate": _estimate,
     "estimate-output": _estimate_output,
+    "backcalc": lambda: _of(MeasuredFlow, "Input of `roughness backcalc`"),
+    "backcalc-output": lambda: _of(FoundN, "What `roughness backcalc` prints"),
     "trail": trail_schema,
     "list": lambda: _of(tuple[Listed, ...], "What `roughness list --json` prints"),
     "check": lambda: _of(CheckDocument, "What `roughness check --json` prints"),

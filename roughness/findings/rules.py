@@ -8,6 +8,7 @@ from roughness.findings import (
     criteria,
     domain,
     double_counting,
+    measured_flow,
     merge_conflict,
     over_survey,
     ranges,
@@ -89,5 +90,5 @@ def find(facts: Facts) -> list[list[Finding]]:
 
 
 def rule_table() -> tuple[RuleInWords, ...]:
-    """Return every rule's key, level, meaning and source: one estimate's, then a survey's."""
-    return (*RULES, *over_survey.RULES, merge_conflict.RULE)
+    """Return every rule in words: one estimate's, a survey's, then a measured flow's."""
+    return (*RULES, *over_survey.RULES, merge_conflict.RULE, *measured_flow.RULES)

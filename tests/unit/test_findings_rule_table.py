@@ -47,6 +47,17 @@ KEYS = [
     "made-by-record",
     "adopted-differs",
     "merge-conflict",
+    "measured-fall-small",
+    "measured-fall-under-velocity-head",
+    "measured-losses-large",
+    "measured-reach-short",
+    "measured-flow-supercritical",
+    "measured-energy-rises",
+    "measured-n-unusual",
+    "measured-subreaches-differ",
+    "measured-sections-few",
+    "measured-reach-expanding",
+    "measured-errors-left-out",
 ]
 
 

@@ -1,0 +1,179 @@
+"""A measured flow read from text and held to what can be measured at all."""
+
+from collections.abc import Iterator, Sequence
+from itertools import pairwise
+from math import pi
+from typing import Final
+
+from roughness.assessment.reading import read_strictly
+from roughness.errors import InputError
+from roughness.quantities.printing import rounded, show_value
+from roughness.quantities.strict_json import read_json
+from roughness.survey.measured_flow import FlowSection, MeasuredFlow
+
+_MOST_SECTIONS: Final = 1000
+# Faster than any river that was gauged: common practice, no source.
+_FASTEST_MS: Final = 20.0
+# A natural section with reversed flow at its edges has 2 to 3: common practice, no source.
+_LARGEST_ALPHA: Final = 10.0
+_LARGEST_SLOPE: Final = 1.0
+
+
+def read_measured_flow(raw: bytes, where: str) -> MeasuredFlow:
+    """Read the JSON text of one measured flow; ``where`` names it in messages.
+
+    Raises
+    ------
+    InputError
+        For anything that is not such a document, or cannot be measured: one sentence.
+    """
+    document = read_json(raw, where)
+    if not isinstance(document, dict):
+        raise InputError("no JSON object", where=where, wanted='it starts with {"discharge_m3s":')
+    flow = read_strictly(MeasuredFlow, document, where)
+    assert isinstance(flow, MeasuredFlow)
+    check_measured_flow(flow, where)
+    return flow
+
+
+def check_measured_flow(flow: MeasuredFlow, where: str) -> None:
+    """Refuse what no flow can have: one sentence with the field and what would be right.
+
+    Raises
+    ------
+    InputError
+        The first thing that is wrong.
+    """
+    _above_zero(flow.discharge_m3s, f"{where}: discharge_m3s", "the discharge in m3/s")
+    if not flow.sections:
+        raise InputError(
+            "there is no section", where=f"{where}: sections", wanted="one or more is due"
+        )
+    if len(flow.sections) > _MOST_SECTIONS:
+        raise InputError(
+            f"{len(flow.sections)} sections are too many",
+            where=f"{where}: sections",
+            wanted=f"at most {_MOST_SECTIONS}",
+        )
+    for number, section in enumerate(flow.sections, 1):
+        _check_section(section, flow.discharge_m3s, f"{where}: section {number}")
+    _check_losses_and_errors(flow, where)
+    if len(flow.sections) == 1:
+        _check_slope(flow.slope, where)
+    else:
+        _check_places(flow, where)
+
+
+def _check_section(section: FlowSection, discharge: float, place: str) -> None:
+    area, perimeter = section.area_m2, section.wetted_perimeter_m
+    _above_zero(area, f"{place}, area_m2", "the wetted area in m2; a dry section carries no flow")
+    _above_zero(perimeter, f"{place}, wetted_perimeter_m", "the wetted perimeter in m")
+    # Of all beds with a wetted perimeter, the half circle holds the largest area.
+    if area > perimeter**2 / (2 * pi) * (1 + 1e-9):
+        raise InputError(
+            f"no bed of {show_value(perimeter)} m holds {show_value(area)} m2",
+            where=f"{place}, wetted_perimeter_m",
+            wanted=f"at least {rounded((2 * pi * area) ** 0.5, 2)} m, or a smaller area",
+        )
+    if section.top_width_m is not None:
+        _above_zero(section.top_width_m, f"{place}, top_width_m", "the width of the water in m")
+        if section.top_width_m > perimeter:
+            raise InputError(
+                f"the water is {show_value(section.top_width_m)} m wide and its bed"
+                f" {show_value(perimeter)} m long",
+                where=f"{place}, top_width_m",
+                wanted="at most the wetted perimeter",
+            )
+    if not 1 <= section.alpha <= _LARGEST_ALPHA:
+        raise InputError(
+            f"alpha {show_value(section.alpha)} is no velocity head coefficient",
+            where=f"{place}, alpha",
+            wanted=f"1 to {show_value(_LARGEST_ALPHA)}",
+        )
+    if discharge / area > _FASTEST_MS:
+        raise InputError(
+            f"{show_value(discharge)} m3/s through {show_value(area)} m2 is a velocity of"
+            f" {rounded(discharge / area, 0)} m/s",
+            where=place,
+            wanted="check that the discharge is in m3/s and the area in m2",
+        )
+
+
+def _check_losses_and_errors(flow: MeasuredFlow, where: str) -> None:
+    for name in ("expansion_loss", "contraction_loss"):
+        value = getattr(flow, name)
+        if not 0 <= value <= 1:
+            raise InputError(
+                f"{show_value(value)} is no part of a velocity head",
+                where=f"{where}: {name}",
+                wanted="0 to 1",
+            )
+    alone = len(flow.sections) == 1
+    for name, unit in (
+        ("discharge_percent", "%"),
+        ("area_percent", "%"),
+        ("slope_percent", "%"),
+        ("water_level_m", "m"),
+    ):
+        value = getattr(flow.errors, name)
+        if value is None:
+            continue
+        place = f"{where}: errors.{name}"
+        if value < 0 or (unit == "%" and value >= 100):
+            wanted = "0 or more" if unit == "m" else "0 to below 100"
+            raise InputError(
+                f"{show_value(value)} {unit} is no error", where=place, wanted=f"{wanted} is due"
+            )
+        if name == ("water_level_m" if alone else "slope_percent"):
+            wanted = "slope_percent with one section, water_level_m with more"
+            raise InputError("it does not count here", where=place, wanted=wanted)
+
+
+def _check_slope(slope: float | None, where: str) -> None:
+    place = f"{where}: slope"
+    if slope is None:
+        raise InputError(
+            "it is missing", where=place, wanted="one section needs the slope, or give two sections"
+        )
+    _above_zero(slope, place, "metres of fall a metre, such as 0.002; water runs downhill")
+    if slope > _LARGEST_SLOPE:
+        raise InputError(
+            f"{show_value(slope)} is too steep", where=place, wanted="metres of fall a metre"
+        )
+
+
+def _check_places(flow: MeasuredFlow, where: str) -> None:
+    if flow.slope is not None:
+        raise InputError(
+            "it does not count here",
+            where=f"{where}: slope",
+            wanted="leave it out: with two sections or more the water levels say it",
+        )
+    for name in ("distance_m", "water_level_m"):
+        for number, section in enumerate(flow.sections, 1):
+            if getattr(section, name) is None:
+                raise InputError(
+                    "it is missing",
+                    where=f"{where}: section {number}, {name}",
+                    wanted="due where there are two sections or more",
+                )
+    distances = [s.distance_m for s in flow.sections if s.distance_m is not None]
+    steps = list(_steps(distances))
+    for number, step in enumerate(steps, 2):
+        if step == 0 or (step > 0) != (steps[0] > 0):
+            raise InputError(
+                f"the distance {show_value(distances[number - 1])} m does not follow"
+                f" {show_value(distances[number - 2])} m",
+                where=f"{where}: section {number}, distance_m",
+                wanted="sections from upstream to downstream, their distances all growing or all"
+                " falling",
+            )
+
+
+def _steps(distances: Sequence[float]) -> Iterator[float]:
+    return (b - a for a, b in pairwise(distances))
+
+
+def _above_zero(value: float, where: str, due: str) -> None:
+    if not value > 0:
+        raise InputError(f"{show_value(value)} is not above 0", where=where, wanted=f"{due} is due")
