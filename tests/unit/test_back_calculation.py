@@ -129,7 +129,9 @@ SOUND = FlowFacts(
     subreach_n=(0.03, 0.04, 0.035),
 )
 MET: dict[str, tuple[dict[str, Any], str]] = {
-    "measured-fall-small": ({"net_head_m": 0.149, "loss_m": 0.0}, "energy line falls by 0.149 m only"),
+    "measured-fall-small": (
+        {"net_head_m": 0.149, "loss_m": 0.0}, "energy line falls by 0.149 m only",
+    ),
     "measured-fall-under-velocity-head": (
         {"velocity_heads_m": (0.5, 0.61)}, "fall of 0.600 m is less than the velocity head",
     ),
