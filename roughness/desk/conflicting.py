@@ -2,11 +2,11 @@
 
 from collections.abc import Iterable, Iterator
 
-from roughness.desk.places import Place
+from roughness.desk.places import Place, Question
 from roughness.findings import Finding
 from roughness.findings.merge_conflict import Word, merge_conflict
 from roughness.findings.wording import factor_value, in_words
-from roughness.quantities.foreign_text import same_name_key
+from roughness.quantities.foreign_text import printable, same_name_key
 from roughness.quantities.printing import show_n
 from roughness.survey.choices import Choice
 from roughness.survey.words import Factor
@@ -27,6 +27,28 @@ def conflict_findings(place: Place, found: Iterable[Conflict]) -> Iterator[Findi
                 Word(_says(side, conflict), side.line.by, side.line.at) for side in conflict.sides
             ]
             yield merge_conflict(_about(conflict), conflict.factor, words)
+
+
+def conflict_at(place: Place, question: Question, found: Iterable[Conflict]) -> Conflict | None:
+    """Return the conflict that is settled by choosing this factor again at this place."""
+    here = _key(place.part.part, place.condition.condition)
+    segment, factor = question
+    return next(
+        (
+            conflict
+            for conflict in found
+            if conflict.factor == factor
+            and _key(conflict.part, conflict.condition) == here
+            and same_name_key(conflict.segment or "") == same_name_key(segment or "")
+        ),
+        None,
+    )
+
+
+def sides_in_words(conflict: Conflict) -> str:
+    """Say who said what: ``small (Ann), large (Bo)``."""
+    told = [f"{_says(side, conflict)} ({side.line.by})" for side in conflict.sides]
+    return printable(", ".join(told))
 
 
 def _bears_on(place: Place, conflict: Conflict) -> bool:

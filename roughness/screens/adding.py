@@ -17,6 +17,7 @@ from roughness.screens.menu import Confirm, Menu
 from roughness.screens.opinion import second_opinion
 from roughness.screens.survey_lines import SurveyLine
 from roughness.screens.timeline import TimelineScreen
+from roughness.screens.uniting import Uniting
 from roughness.survey.stream import Part
 from roughness.survey.words import USUAL_PARTS
 from roughness.trail.lines import Line, instant
@@ -65,6 +66,10 @@ class Adding:
     def opinion(self) -> None:
         """Let a second person judge the selected part blind."""
         self._run(lambda: second_opinion(self._screen))
+
+    def unite(self, uniting: Uniting) -> None:
+        """Unite what was written apart."""
+        self._run(uniting.unite)
 
     def evidence(self) -> None:
         """Open the photos and documents of the reach."""

@@ -28,6 +28,7 @@ from roughness.screens.menu import Menu
 from roughness.screens.opinion import without_first
 from roughness.screens.reach_list import ReachList
 from roughness.screens.survey_lines import SurveyLine, SurveyLines
+from roughness.screens.uniting import Uniting
 
 _SLICE_S: Final = 0.008
 # Whoever moves about does not wait for reaches that are not on the screen.
@@ -65,6 +66,7 @@ class SurveyScreen(Screen[None]):
         Binding("f", "condition", "flow"),
         Binding("o", "opinion", "second opinion"),
         Binding("l", "timeline", "timeline"),
+        Binding("M", "unite", "unite", key_display="M"),
         Binding("escape", "back", "back", show=False),
     ]
 
@@ -80,6 +82,7 @@ class SurveyScreen(Screen[None]):
         self._pressed = 0.0
         self._watch = FileWatch(pen.survey)
         self._adding = Adding(self)
+        self._uniting = Uniting(self)
         self.drop = DropFolder()
         self._hidden: Place | None = None
         self._others = ""
@@ -159,16 +162,19 @@ class SurveyScreen(Screen[None]):
         progress = self._progress or ("weak points first" if self._weak_first else "")
         counts = self.lines.counts(self.condition)
         self.query_one("#counts", Static).update(survey_text.counts_line(counts, progress))
-        banner = self._read_only() or self._others
+        told = (self._read_only(), self._uniting.sentence(), self._others)
+        banner = "; ".join(one for one in told if one)
         self.query_one("#banner", Static).update(Text(banner, no_wrap=True, overflow="ellipsis"))
-        self.query_one("#banner").display = bool(banner)
+        if self.query_one("#banner").display != bool(banner):
+            self.query_one("#banner").display = bool(banner)
+            self.refresh_bindings()
 
     def _read_only(self) -> str:
         trail = self.survey.trail()
         if trail.broken:
             return f"read-only, the survey's trail is broken: {printable(str(trail.broken[0]))}"
         if trail.to_be_merged:
-            return "two people wrote to the survey's own trail apart: merge its two ends"
+            return ""  # what lies apart is told with the reaches
         return "read-only: a newer version of the tool wrote this survey" if trail.newer else ""
 
     @on(ReachList.Moved)
@@ -240,6 +246,7 @@ class SurveyScreen(Screen[None]):
         """Read again what somebody (or this screen) wrote since the last look."""
         self._greet(self.survey.lock.others())
         self._warn()
+        self._uniting.look()
         changed = self._watch.changed()
         if changed is None:
             return
@@ -342,6 +349,14 @@ class SurveyScreen(Screen[None]):
     def action_undo(self) -> None:
         """Take back the last thing this person wrote here, after saying what it is."""
         self._adding.undo()
+
+    def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:  # noqa: ARG002
+        """Offer to unite only where something lies apart."""
+        return action != "unite" or bool(self._uniting.sentence())
+
+    def action_unite(self) -> None:
+        """Unite what was written apart, after saying what that does."""
+        self._adding.unite(self._uniting)
 
     def action_export(self) -> None:
         """Write the table of n for a model."""

@@ -136,6 +136,15 @@ class SurveyLines:
         """The reaches that were not read yet, in stream order."""
         return [name for name in self.names if name not in self._rows]
 
+    @property
+    def two_ends(self) -> list[str]:
+        """The reaches read so far that two people wrote to apart, their trails not united."""
+        return [
+            name
+            for name, rows in self._rows.items()
+            if any(finding.rule == "to-be-merged" for finding in rows[0].findings)
+        ]
+
     def read(self, names: Sequence[str], within_s: float | None = None) -> int:
         """Read reaches again and return how many; stops after ``within_s`` seconds.
 

@@ -205,6 +205,8 @@ class WalkScreen(Screen[None]):
             line.append(f" {capital(origin)}{confirms}.", style="italic")
         if standing and standing.choice.note:
             line.append(f" Note: {printable(standing.choice.note)}", style="italic")
+        if self.course.said_apart:
+            line.append(f" ! {self.course.said_apart}", style="bold")
         if count := self.course.evidence_count:
             told = "1 photo or document" if count == 1 else f"{count} photos or documents"
             line.append(f" {told}: p.", style="italic")

@@ -7,12 +7,14 @@ highlighted row, a measure that was typed and a value that was moved.
 from dataclasses import replace
 
 from roughness.desk import carrying
+from roughness.desk.conflicting import conflict_at, sides_in_words
 from roughness.desk.evidence_lists import is_about
 from roughness.desk.folder import SurveyFolder
 from roughness.desk.places import Place, Question, place_of
 from roughness.desk.recording import Recorder
 from roughness.errors import InputError
 from roughness.screens.walk_at_hand import AtHand
+from roughness.trail.conflicts import Conflict
 
 
 class Course(AtHand):
@@ -82,13 +84,25 @@ class Course(AtHand):
         filed = self.survey.reach_state(self.reach).evidence
         return sum(is_about(one.evidence, self.part, self.condition, factor) for one in filed)
 
+    @property
+    def said_apart(self) -> str:
+        """What people said of the factor at hand without seeing each other; empty if nothing."""
+        conflict = self._conflict(self.question) if self.question else None
+        if conflict is None:
+            return ""
+        return f"Said apart: {sides_in_words(conflict)}. Choose again: that settles it."
+
+    def _conflict(self, question: Question) -> Conflict | None:
+        return conflict_at(self.place, question, self.survey.conflicts(self.reach))
+
     def _todo(self) -> list[Question]:
-        """Return the questions nobody answered here, then those only carried over."""
+        """Return the questions nobody answered here, those said apart, those only carried."""
         found = list(self.place.missing)
+        found += [q for q in self.place.questions if q not in found and self._conflict(q)]
         for question in self.place.questions:
             standing = self.place.at(*question)
             if standing and standing.carried_from and not standing.inherited_from:
-                found.append(question)
+                found += [question] if question not in found else []
         return found
 
     def _first_open(self) -> Question | None:
@@ -119,7 +133,7 @@ class Course(AtHand):
         self.refuse_unsaid(choice)
         standing = self.standing
         segment, factor = self.question
-        if standing is None or choice != standing.choice:
+        if standing is None or choice != standing.choice or self._conflict(self.question):
             self.pen.choose(self.place, factor, choice, segment=segment)
         elif standing.carried_from and not standing.inherited_from:
             carrying.confirm(self.pen, self.place, self.question)
