@@ -1,8 +1,6 @@
 """From the bytes of a TOML file to a handbook, or to one sentence that says what is wrong."""
 
 import hashlib
-import re
-import tomllib
 from typing import Any, Final
 
 from pydantic import ValidationError
@@ -19,11 +17,9 @@ from roughness.handbook.toml_shape import (
     place_of,
 )
 from roughness.quantities.foreign_text import nearest, printable
-from roughness.quantities.strict_json import decoded
+from roughness.quantities.strict_toml import read_toml
 from roughness.survey.words import FACTORS, Factor, Plants, Setting, factors_of
 
-LARGEST: Final = 1 << 20
-_AT = re.compile(r" \(at (?:line (\d+), column (\d+)|end of document)\)$")
 _MESSAGES: Final[dict[str, str]] = {
     "empty_text": "it is empty",
     "control": "it holds a control or direction character",
@@ -99,33 +95,10 @@ def read_key(raw: bytes, where: str) -> str:
 
 
 def _read_toml(raw: bytes, refuse: Refuse) -> dict[str, Any]:
-    if len(raw) > LARGEST:
-        raise refuse("", "it is too large", f"at most {LARGEST} bytes are due")
     try:
-        text = decoded(raw, "")
+        return read_toml(raw, "", due="a handbook in TOML")
     except InputError as error:
-        raise refuse("", error.what, error.wanted) from None
-    if not text.strip():
-        raise refuse("", "it is empty", "a handbook in TOML is due")
-    try:
-        return tomllib.loads(text)
-    except RecursionError:
-        raise refuse("", "it is nested too deep", "a handbook in TOML is due") from None
-    except tomllib.TOMLDecodeError as error:
-        raise _not_toml(str(error), text, refuse) from None
-    except ValueError:
-        # Python reads no whole number of thousands of digits, and TOML names no place for it.
-        raise refuse("", "it holds a number of thousands of digits", "shorten it") from None
-
-
-def _not_toml(message: str, text: str, refuse: Refuse) -> HandbookError:
-    match = _AT.search(message)
-    if match is None:
-        return refuse("", f"not TOML ({printable(message)})", "correct the file")
-    lines = text.rstrip("\n").split("\n")
-    line, column = match[1] or len(lines), match[2] or len(lines[-1]) + 1
-    reason = printable(message[: match.start()])
-    return refuse(f"line {line}, column {column}", f"not TOML ({reason})", "correct that line")
+        raise refuse(error.where, error.what, error.wanted) from None
 
 
 def _first_fault(error: ValidationError, document: dict[str, Any], refuse: Refuse) -> HandbookError:

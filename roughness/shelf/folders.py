@@ -7,9 +7,10 @@ from pathlib import Path
 from typing import NamedTuple, TypeVar
 
 from roughness.errors import HandbookError
-from roughness.handbook.parsing import LARGEST, hash_of, parse_handbook, read_key
+from roughness.handbook.parsing import hash_of, parse_handbook, read_key
 from roughness.handbook.tables import Handbook
 from roughness.quantities.foreign_text import printable
+from roughness.quantities.strict_toml import LARGEST
 
 _MOST_KEPT = 64
 _T = TypeVar("_T")
