@@ -69,7 +69,7 @@ def _step(handbook: Handbook, entry: Resolved, share: float) -> Step:
         own_best=entry.choice.best is not None,
         basis="measured" if entry.measured else "grade",
         measured_says=entry.candidates.says,
-        source=entry.source,
+        source=entry.cited,
         note=shown_note(entry.choice),
         share_of_variance=share,
     )

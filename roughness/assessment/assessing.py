@@ -178,7 +178,7 @@ def _factor_estimate(
         published=Limits(low=published.low, high=published.high) if published else None,
         share_of_variance=share,
         basis="measured" if entry.measured else "grade",
-        source=entry.source,
+        source=entry.cited,
         note=shown_note(entry.choice),
         segment=zone.name,
     )

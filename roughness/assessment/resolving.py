@@ -49,6 +49,15 @@ class Resolved:
         """Table and page, or that there is none."""
         if self.grade is not None:
             return self.grade.source
+        return self._without_grade
+
+    @property
+    def cited(self) -> str:
+        """The same, marked where the values were only remembered."""
+        return self.grade.cited if self.grade is not None else self._without_grade
+
+    @property
+    def _without_grade(self) -> str:
         return "a flood plain has none" if self.choice.grade else "own value, no table"
 
 

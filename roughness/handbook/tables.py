@@ -50,6 +50,11 @@ class Grade:
         return ", ".join(word for word in (self.table, page) if word)
 
     @property
+    def cited(self) -> str:
+        """The source, marked where the values were only remembered: ``table 2, from memory``."""
+        return f"{self.source}, from memory" if self.provenance == "memory" else self.source
+
+    @property
     def best_is_middle(self) -> bool:
         """Whether the best value is the middle of the range, because none is published."""
         return self.best is None and self.low < self.high

@@ -160,5 +160,5 @@ def detail(course: Course) -> Text:
         line.append(". ")
     if course.is_draft:
         line.append("Not taken yet: ⏎ takes it. ", style="bold")
-    line.append(f"{printable(grade.criterion)} ({printable(grade.source)})")
+    line.append(f"{printable(grade.criterion)} ({printable(grade.cited)})")
     return line

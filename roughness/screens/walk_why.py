@@ -53,7 +53,7 @@ def why_text(course: Course) -> str:
         span = shown(grade.low)
         if grade.low != grade.high:
             span += f" to {shown(grade.high)}"
-        lines.append(f"{grade.name}, {span}: {grade.criterion} ({grade.source})")
+        lines.append(f"{grade.name}, {span}: {grade.criterion} ({grade.cited})")
     lines += ["", *table.notes, f"{handbook.citation}; {table.source}."]
     if place.asked_handbook != handbook.key:
         lines.append(f"{place.asked_handbook} has no table for flood plains: this one serves.")

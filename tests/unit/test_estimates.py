@@ -189,3 +189,21 @@ def test_what_people_differ_by_is_wider_than_the_spread_of_the_choices() -> None
 
 def test_the_same_input_gives_the_same_digits() -> None:
     assert estimate(GOOD).as_document() == estimate(json.dumps(GOOD)).as_document()
+
+
+@pytest.mark.parametrize(("grade", "marked"), [("severe", True), ("minor", False)])
+def test_a_value_that_was_only_remembered_says_so_beside_itself(grade: str, marked: bool) -> None:
+    factors = {
+        "base": {"grade": "gravel"},
+        "irregularity": {"grade": "minor"},
+        "variation": {"grade": "gradual"},
+        "obstruction": {"grade": grade},
+        "vegetation": {"grade": "small"},
+        "meander": {"grade": "minor"},
+    }
+    handbook = {"handbook": "usgs-wsp-2339", "setting": "channel"}
+    found = estimate(handbook | {"factors": factors})
+    (obstruction,) = (entry for entry in found.factors if entry.factor == "obstruction")
+    (told,) = (line for line in found.reasoning if line.startswith("Obstruction n3"))
+    assert ("from memory" in obstruction.source) is marked
+    assert ("from memory" in told) is marked
