@@ -122,7 +122,7 @@ class ReviewScreen(Screen[None]):
         """Show the list; ``at`` moves the cursor to a place."""
         listing = self.query_one(OptionList)
         kept = at or (key_of(self.selected) if self.selected else None)
-        width = max(40, self.size.width - 2)
+        width = max(40, self.size.width)
         columns = ListColumns.within(width - 1, others=self.places.has_opinions)
         found = self._filtered()
         self._shown = [row for _, row in found]

@@ -22,6 +22,7 @@ from roughness.survey.words import MULTIPLIER
 from roughness.trail.review_state import Asked
 
 ANSWERED: Final = "✓"
+_EIGHTHS: Final = ("", "▏", "▎", "▍", "▌", "▋", "▊", "▉")
 _VALUE, _SHARE, _NOTE, _PHOTO = 6, 5, 4, 5
 _WIDE = 100
 
@@ -39,7 +40,7 @@ class Columns:
     def within(cls, width: int, *, apart: bool) -> "Columns":
         """Return the columns for lines of ``width`` cells."""
         factor = 18 if apart else 15
-        span, long = (11, 4) if width < _WIDE else (15, 12)
+        span, long = (11, 3) if width < _WIDE else (15, 12)
         fixed = 2 + factor + _VALUE + span + _SHARE + long + _NOTE + _PHOTO + 7
         return cls(factor, span, long, max(0, width - fixed))
 
@@ -77,7 +78,8 @@ class Columns:
         """Return a share of the variance as a percentage and a bar."""
         if share is None:
             return ""
-        bar = "█" * max(0, min(self.bar, round(share * self.bar)))
+        eighths = round(min(1.0, max(0.0, share)) * self.bar * 8)
+        bar = "█" * (eighths // 8) + _EIGHTHS[eighths % 8]
         return f"{show_share(share):>{_SHARE}} {bar}"
 
 

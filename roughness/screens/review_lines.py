@@ -14,7 +14,7 @@ from roughness.screens.review_words import open_counts
 from roughness.screens.survey_lines import SurveyLine
 
 _WIDE: Final = 110
-_NUMBER, _STATUS = 3, 23
+_NUMBER, _STATUS = 3, 24
 _ABOVE: Final = {"unbacked": "no note,", "spread": "spread to", "others": "second"}
 _BELOW: Final = {
     "reach": "reach",
@@ -41,10 +41,10 @@ class ListColumns:
         """Return the columns for ``width`` cells; ``others``: there are second opinions."""
         if width < _WIDE:
             return cls({}, width)
-        fixed = {"number": _NUMBER, "reach": 0, "part": 12, "condition": 17, "n": 6, "open": 15}
+        fixed = {"number": _NUMBER, "reach": 0, "part": 11, "condition": 16, "n": 5, "open": 18}
         fixed |= {"unbacked": 8, "spread": 9}
         fixed |= {"others": 7} if others else {}
-        fixed |= {"status": _STATUS - 10 if others else _STATUS}
+        fixed |= {"status": _STATUS - 11 if others else _STATUS}
         fixed["reach"] = width - sum(fixed.values()) - len(fixed) + 1
         return cls(fixed, width)
 
@@ -104,9 +104,11 @@ def _two_lines(number: str, row: Row, weak: Weakness, width: int) -> tuple[str, 
     where = f"{number} {', '.join(name for name in names if name)}"
     told = [open_counts(row) or "nothing open"]
     if row.estimate is not None:
-        told.append(f"{show_share(weak.unbacked)} without note or photo")
-        told.append(f"spread {rounded(weak.width, 2)} of people's")
+        told.append(f"{show_share(weak.unbacked)} no note or photo")
+        told.append(f"spread {rounded(weak.width, 2)}")
     if row.review.opinions:
-        told.append(f"2nd opinion {rounded(weak.disagreement, 1)}")
+        told.append(f"second opinion {rounded(weak.disagreement, 1)}")
+    elif row.estimate is not None:
+        told[-1] += " of people's"
     status = f"{row.status:>{_STATUS}}"
-    return f"{fitted(where, width - _STATUS)}{status}", f"    {'   '.join(told)}"
+    return f"{fitted(where, width - _STATUS)}{status}", f"    {'  '.join(told)}"

@@ -135,7 +135,7 @@ class ReviewPage(Screen[None]):
             return
         kept = None if first or not self._lines else self.line.key
         self._read_evidence()
-        row, width = self.row, max(40, self.size.width - 2)
+        row, width = self.row, max(40, self.size.width)
         self._lines = lines_of(row)
         self.query_one("#crumbs", Static).update(crumbs(row, self.at + 1, len(self.keys), width))
         self.query_one("#page-sum", Static).update(sum_lines(row, width))
@@ -204,7 +204,7 @@ class ReviewPage(Screen[None]):
         """Show a sentence until the next key; else what is open, on a rule."""
         self._said = sentence
         words = f" open: {open_counts(self.row).strip(' !?') or 'nothing'} ── Space: all of it ──"
-        rule = Text(f"{'─' * max(0, self.size.width - 2 - len(words))}{words}", style="dim")
+        rule = Text(f"{'─' * max(0, self.size.width - len(words))}{words}", style="dim")
         told = Text(printable(sentence), style="bold") if sentence else rule
         self.query_one("#message", Static).update(told)
 

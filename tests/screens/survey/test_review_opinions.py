@@ -8,8 +8,11 @@ import pytest
 from textual.widgets import Input, OptionList
 
 from roughness.desk.folder import SurveyFolder
+from roughness.desk.places import place_of
 from roughness.desk.recording import Recorder
 from roughness.desk.rows import Row, rows
+from roughness.survey.choices import BaseChoice
+from roughness.trail.data import Gate, SegmentShare
 
 FLOOD = "design flood"
 BOTH_SIZES = pytest.mark.parametrize("size", [(80, 24), (120, 40)])
@@ -106,6 +109,8 @@ async def test_a_filled_file_is_taken_in_and_laid_beside_the_first(
         line = next(x for x in keyboard.text.splitlines() if "≠" in x)
         for told in ("vegetation", "small", "large", "+0."):
             assert told in line
+        for told in ("0.006 (0.002–0.010)", "0.0375 (0.025–0.050)", "+0.032"):
+            assert told in keyboard.text
         assert max(map(len, keyboard.text.splitlines())) <= size[0]
         await keyboard.press("escape", "escape")
         # In the list the disagreement is one of the parts of the score.
@@ -184,3 +189,33 @@ async def test_the_list_offers_second_opinions_too(open_app: Any, pen: Recorder)
         assert "write the blind file" in keyboard.words
         await keyboard.press("escape")
         assert keyboard.screen == "ReviewScreen"
+
+
+async def test_who_told_bed_and_banks_apart_still_sees_what_both_chose(
+    open_app: Any, pen: Recorder, grades: Any, here: Path
+) -> None:
+    shares = (
+        SegmentShare(name="bed", perimeter_percent=60),
+        SegmentShare(name="banks", perimeter_percent=40),
+    )
+    gate = Gate(part="main channel", condition=FLOOD, handbook="usgs-wsp-2339", segments=shares)
+    pen.set_gate("Weir pool", gate)
+    place = place_of(pen.survey, "Weir pool", "main channel", FLOOD)
+    pen.choose(place, "base", BaseChoice(grade="cobble"), segment="bed")
+    async with open_app(pen.survey.folder, "Rea") as keyboard:
+        await opened_page(keyboard)
+        blind = await handed_out(keyboard, here)
+        await taken_in(keyboard, filled(blind, grades))
+        await keyboard.press("o", "3")
+        assert "bed: cobble" in keyboard.text
+        assert "banks: firm-soil" in keyboard.text
+        assert "only n can be subtracted" in keyboard.words
+        await keyboard.press("escape", "o", "4")
+        await keyboard.press("right")
+        keyboard.app.screen.query_one("#whole").focus()
+        await keyboard.press("right", "enter")
+        await keyboard.type("one n is enough\n")
+        assert "Agreed:" in keyboard.words
+    row = row_of(pen.survey)
+    assert row.place
+    assert not row.place.segments
