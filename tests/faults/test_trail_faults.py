@@ -1,5 +1,6 @@
 """Killed writers, two writers at once, full disks: what was said to be kept is there."""
 
+import errno
 import json
 import os
 import subprocess
@@ -174,3 +175,41 @@ def test_a_demo_that_the_disk_does_not_take_says_why_and_leaves_nothing(tmp_path
     )
     assert run.returncode == 2 and "File too large" in run.stderr
     assert "nothing was made" in run.stderr and list(tmp_path.iterdir()) == []
+
+
+def test_a_line_and_a_new_file_are_on_the_disk_before_they_are_said_to_be_kept(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    synced: list[tuple[int, int]] = []
+    sync = os.fsync
+
+    def seen(handle: int) -> None:
+        sync(handle)
+        synced.append((os.fstat(handle).st_ino, os.fstat(handle).st_size))
+
+    monkeypatch.setattr(os, "fsync", seen)
+    path = begun(tmp_path)
+    assert path.parent.stat().st_ino in [inode for inode, _ in synced]
+    for note in ("first", "second"):
+        visit(path, tmp_path, note)
+        assert (path.stat().st_ino, path.stat().st_size) in synced
+
+
+def test_a_line_that_the_disk_did_not_confirm_is_not_kept_and_said(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    path = begun(tmp_path)
+    before, sync, calls = path.read_bytes(), os.fsync, []
+
+    def failing_once(handle: int) -> None:
+        calls.append(handle)
+        if len(calls) == 1:
+            raise OSError(errno.EIO, os.strerror(errno.EIO))
+        sync(handle)
+
+    monkeypatch.setattr(os, "fsync", failing_once)
+    with pytest.raises(NotKeptError, match="as it was before"):
+        visit(path, tmp_path, "lost")
+    assert path.read_bytes() == before
+    visit(path, tmp_path, "kept")
+    assert b"kept" in path.read_bytes() and b"lost" not in path.read_bytes()
