@@ -13,7 +13,7 @@ from roughness.errors import RoughnessError
 from roughness.findings import Estimated, Finding, find_over_survey
 from roughness.quantities.foreign_text import same_name_key
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
-from roughness.survey.words import FACTORS, Factor
+from roughness.survey.words import FACTORS, MULTIPLIER, Factor
 from roughness.trail.conflicts import Conflict
 from roughness.trail.lines import Line
 from roughness.trail.review_state import NOT_REVIEWED, FindingAnswer, ReviewState
@@ -295,4 +295,13 @@ def _estimated(row: Row) -> Estimated:
         visit_growth=row.visit.growth if row.visit else None,
         condition_growth=row.condition.growth if row.condition else None,
         made_by_record=row.place.made_by_record,
+        visited=row.visit is not None,
+        multiplier_over_bank=_multiplier_over_bank(row),
     )
+
+
+def _multiplier_over_bank(row: Row) -> float | None:
+    assert row.estimate and row.part and row.condition
+    if row.part.setting != "channel" or row.condition.bank != "over bank":
+        return None
+    return max(e.best for e in row.estimate.factors if e.factor == MULTIPLIER)

@@ -14,6 +14,7 @@ from roughness.quantities.printing import (
     show_n,
     show_range,
     show_share,
+    show_value,
 )
 from roughness.quantities.ranges import Range
 from roughness.survey.words import Factor, Growth
@@ -49,6 +50,10 @@ class Estimated:
     condition_growth: Growth | None = None
     made_by_record: tuple[str, ...] = ()
     """What a `record` made because it was not there: ``part``, ``condition``."""
+    visited: bool = True
+    """Whether a visit is noted that the choices belong to."""
+    multiplier_over_bank: float | None = None
+    """The channel's multiplier for bends where its condition is over bank, else None."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -245,6 +250,42 @@ def adopted_differs(rows: Sequence[Estimated]) -> Iterator[Said]:
         )
 
 
+@survey_rule(
+    "multiplier-over-bank",
+    "ask",
+    meaning="a multiplier for bends above 1 while the water is over bank, and no note says why",
+    source="USGS WSP 2339, text on meandering: flow confined to the channel (seen second hand)",
+)
+def multiplier_over_bank(rows: Sequence[Estimated]) -> Iterator[Said]:
+    """Over bank, part of the water takes the short way across the bends."""
+    for row in rows:
+        m = row.multiplier_over_bank
+        if m is not None and m > 1 + NOISE and "meander" not in row.backed:
+            yield Said(
+                row,
+                f"The bends multiply n by {show_value(m)}, but at {printable(row.condition)} the "
+                "water is over bank and part of it crosses them; say in a note that most of it "
+                "still follows the channel, or take the multiplier back.",
+                "meander",
+            )
+
+
+@survey_rule(
+    "no-visit",
+    "ask",
+    meaning="no visit is noted that the choices belong to",
+)
+def no_visit(rows: Sequence[Estimated]) -> Iterator[Said]:
+    """A judgement by somebody who was not there is another thing."""
+    for row in rows:
+        if not row.visited:
+            yield Said(
+                row,
+                "No visit to the reach is noted; note who was there and when, or that it was "
+                "judged from pictures.",
+            )
+
+
 RULES: tuple[SurveyRule, ...] = (
     jump_between_neighbours,
     all_reaches_alike,
@@ -253,4 +294,6 @@ RULES: tuple[SurveyRule, ...] = (
     growth_differs,
     made_by_record,
     adopted_differs,
+    multiplier_over_bank,
+    no_visit,
 )

@@ -107,9 +107,11 @@ def test_export_takes_only_what_is_accepted_where_that_is_wanted(
     main(["export", str(rea.survey.folder), "-o", str(target), "--status", "accepted"])
     assert "not accepted" not in capsys.readouterr().err
     with target.open(encoding="utf-8", newline="") as file:
-        (cells,) = list(csv.DictReader(file))
-    assert (cells["reach"], cells["status"]) == (HAY, "accepted")
+        accepted = list(csv.DictReader(file))
+    assert {cells["status"] for cells in accepted} == {"accepted"}
+    (cells,) = [cells for cells in accepted if cells["reach"] == HAY]
     assert (cells["reviewed_by"], cells["reviewed_at"]) == ("Rea Quist", line.at)
     main(["export", str(rea.survey.folder), "-o", str(target)])
     every = len(rows(rea.survey))
-    assert f"{every - 1} of {every} rows are not accepted" in capsys.readouterr().err
+    others = every - len(accepted)
+    assert f"{others} of {every} rows are not accepted" in capsys.readouterr().err

@@ -106,6 +106,13 @@ SINGLE: list[tuple[str, dict[str, Any], dict[str, Any]]] = [
     ),
     ("made-by-record", {"made_by_record": ("part",)}, {"made_by_record": ()}),
     ("adopted-differs", {"adopted": 0.0501}, {"adopted": 0.05}),
+    ("multiplier-over-bank", {"multiplier_over_bank": 1.15}, {"multiplier_over_bank": 1.0}),
+    (
+        "multiplier-over-bank",
+        {"multiplier_over_bank": 1.3},
+        {"multiplier_over_bank": 1.3, "backed": frozenset({"meander"})},
+    ),
+    ("no-visit", {"visited": False}, {"visited": True}),
     ("adopted-differs", {"adopted": 0.029}, {"adopted": 0.03}),
 ]
 

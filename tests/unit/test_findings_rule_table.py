@@ -46,6 +46,8 @@ KEYS = [
     "growth-differs",
     "made-by-record",
     "adopted-differs",
+    "multiplier-over-bank",
+    "no-visit",
     "merge-conflict",
     "measured-fall-small",
     "measured-fall-under-velocity-head",
