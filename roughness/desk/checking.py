@@ -130,9 +130,10 @@ def _of_handbooks(survey: SurveyFolder) -> Iterator[Fault]:
         yield Fault("handbooks", 0, str(error).removeprefix("handbooks "))
         return
     yield from map(_of_file, unusable_handbooks(folder))
+    files = contents(folder).files
     known = {
         key: {hash_of(path.read_bytes())} | shipped_editions().get(key, frozenset())
-        for key, path in contents(folder).files.items()
+        for key, path in files.items()
     }
     for row in rows(survey):
         if row.place is None or row.place.state is None:
@@ -142,9 +143,10 @@ def _of_handbooks(survey: SurveyFolder) -> Iterator[Fault]:
         for chosen in row.place.state.choices.values():
             for factor, entry in chosen.items():
                 if entry.handbook_sha256 not in editions:
+                    here = files.get(served.key)
                     yield Fault(
-                        f"handbooks ({served.key})",
+                        f"handbooks/{here.name}" if here else "handbooks",
                         0,
                         f"{factor} of {row.place.part.part} in {row.reach.reach} was chosen from"
-                        " another edition of this handbook, which is not here",
+                        f" another edition of {served.key}, which is not here",
                     )

@@ -265,3 +265,16 @@ def test_a_linked_handbooks_folder_is_a_fault_and_hides_no_other(
     (pen.survey.folder / "handbooks").symlink_to(tmp_path / "elsewhere", target_is_directory=True)
     faults = {fault.file: fault.what for fault in check(SurveyFolder(pen.survey.folder)).broken}
     assert "is a link" in faults["handbooks"] and len(faults) == 2
+
+
+def test_an_agencys_table_that_changed_after_use_is_named_by_its_file(pen: Recorder) -> None:
+    pen.record("Weir", raw(), "file")
+    (copy,) = pen.survey.handbooks.glob("*.toml")
+    own = copy.with_name("our-tables.toml")
+    own.write_bytes(copy.read_bytes().replace(b'key = "usgs-wsp-2339"', b'key = "our-tables"', 1))
+    pen.record("Weir", raw().replace(b"usgs-wsp-2339", b"our-tables"), "file")
+    assert check(SurveyFolder(pen.survey.folder)).intact
+    own.write_bytes(own.read_bytes() + b"\n# revised\n")
+    faults = check(SurveyFolder(pen.survey.folder)).broken
+    assert {fault.file for fault in faults} == {"handbooks/our-tables.toml"}
+    assert all("another edition of our-tables" in fault.what for fault in faults)
