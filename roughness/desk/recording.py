@@ -296,9 +296,15 @@ class Recorder:
         data: Mapping[str, Any],
         at: str | None = None,
     ) -> Line:
+        self._refuse_newer()
         lock = self.survey.lock
         kept = append(path, kind, data, by=self.by, at=at or now(), lock=lock, known=known)
         return self._took(path, kept)
+
+    def _refuse_newer(self) -> None:
+        """A survey whose own trail a newer version wrote is read-only, its reaches too."""
+        if newer := self.survey.trail().newer:
+            raise RecordError(f"{newer}; nothing was written")
 
     def _took(self, path: Path, kept: Kept) -> Line:
         self.survey.kept(path, kept.trail)
@@ -308,6 +314,7 @@ class Recorder:
 
     def keep_handbooks(self, *keys: str) -> None:
         """Put a copy of each handbook that is used into the survey, once."""
+        self._refuse_newer()
         own, shipped = contents(self.survey.handbooks), contents(tables_folder())
         for key in dict.fromkeys(keys):
             if key not in own.files and key in shipped.files:

@@ -16,6 +16,7 @@ from roughness.errors import InputError, RecordError
 from roughness.survey.choices import BaseChoice
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.trail.data import Gate, SegmentShare
+from roughness.trail.lines import hash_of
 
 DOCUMENT: dict[str, Any] = {
     "part": "main channel",
@@ -278,3 +279,16 @@ def test_an_agencys_table_that_changed_after_use_is_named_by_its_file(pen: Recor
     faults = check(SurveyFolder(pen.survey.folder)).broken
     assert {fault.file for fault in faults} == {"handbooks/our-tables.toml"}
     assert all("another edition of our-tables" in fault.what for fault in faults)
+
+
+def test_a_survey_that_a_newer_version_wrote_is_read_only_in_its_reaches_too(pen: Recorder) -> None:
+    lines: list[bytes] = []
+    for line in pen.survey.path.read_bytes().splitlines():
+        document = json.loads(line) | {"prev": hash_of(lines[-1]) if lines else None}
+        document["data"] |= {"format": 2} if not lines else {}
+        lines.append(json.dumps(document).encode())
+    pen.survey.path.write_bytes(b"".join(line + b"\n" for line in lines))
+    before = tree(pen.survey.folder)
+    with pytest.raises(RecordError, match=r"format 2.*nothing was written"):
+        pen.record("Weir", raw(), "file")
+    assert tree(pen.survey.folder) == before
