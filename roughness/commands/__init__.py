@@ -33,6 +33,7 @@ VERBS: dict[str, str] = {
     "adopt": "let another n than the estimate go to the model, with a reason",
     "estimate": "n, range, spread, findings and reasoning for one part",
     "backcalc": "n of a reach from a measured flow",
+    "crosscheck": "other roads to n: grain, slope and channel-type values on one axis",
     "check": "trails, handbooks and findings of a survey",
     "merge": "unite a survey with another copy of it",
     "export": "the table of n for a model: .csv or .json",

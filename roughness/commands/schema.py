@@ -8,6 +8,8 @@ from roughness.commands.results import print_json
 NAMES = (
     "estimate",
     "estimate-output",
+    "crosscheck",
+    "crosscheck-output",
     "backcalc",
     "backcalc-output",
     "trail",

@@ -6,12 +6,14 @@ from typing import Any, Final
 from pydantic import TypeAdapter
 
 from roughness.assessment.back_calculating import FoundN
+from roughness.assessment.cross_checking import CrossChecked
 from roughness.assessment.estimate import Estimate
 from roughness.commands.documents import CheckDocument, Listed, MergeDocument
 from roughness.exports.columns import COLUMNS
 from roughness.findings import Finding, rule_table
 from roughness.handbook.toml_shape import HandbookShape
 from roughness.survey.choices import Judgement
+from roughness.survey.cross_check import CrossCheck
 from roughness.survey.measured_flow import MeasuredFlow
 from roughness.trail.kinds import trail_schema
 
@@ -39,6 +41,13 @@ def _estimate_output() -> dict[str, Any]:
     numbers = schema["$defs"]["Spread"]["properties"]
     schema["$defs"]["Spread"]["properties"] = {name: {"type": "number"} for name in numbers}
     return _only_used(schema)
+
+
+def _cross_check_output() -> dict[str, Any]:
+    schema = _of(CrossChecked, "What `roughness crosscheck` prints")
+    # Only where stones were counted.
+    schema["properties"]["pebble_count"] = {"$ref": "#/$defs/PebbleCount"}
+    return schema
 
 
 def _only_used(schema: dict[str, Any]) -> dict[str, Any]:
@@ -90,6 +99,8 @@ def _findings() -> dict[str, Any]:
 SCHEMAS: Final[Mapping[str, Callable[[], dict[str, Any]]]] = {
     "estimate": _estimate,
     "estimate-output": _estimate_output,
+    "crosscheck": lambda: _of(CrossCheck, "Input of `roughness crosscheck`"),
+    "crosscheck-output": _cross_check_output,
     "backcalc": lambda: _of(MeasuredFlow, "Input of `roughness backcalc`"),
     "backcalc-output": lambda: _of(FoundN, "What `roughness backcalc` prints"),
     "trail": trail_schema,

@@ -6,6 +6,7 @@ import numpy as np
 
 from roughness.findings import (
     criteria,
+    cross_check,
     domain,
     double_counting,
     measured_flow,
@@ -90,5 +91,6 @@ def find(facts: Facts) -> list[list[Finding]]:
 
 
 def rule_table() -> tuple[RuleInWords, ...]:
-    """Return every rule in words: one estimate's, a survey's, then a measured flow's."""
-    return (*RULES, *over_survey.RULES, merge_conflict.RULE, *measured_flow.RULES)
+    """Return every rule in words: an estimate's, a survey's, a measured flow's, a cross-check's."""
+    whole_survey = (*over_survey.RULES, merge_conflict.RULE)
+    return (*RULES, *whole_survey, *measured_flow.RULES, *cross_check.RULES)

@@ -60,6 +60,14 @@ KEYS = [
     "measured-sections-few",
     "measured-reach-expanding",
     "measured-errors-left-out",
+    "base-against-grain-formulas",
+    "n-against-reach-formulas",
+    "n-below-grains",
+    "n-outside-channel-type",
+    "sand-in-either-regime",
+    "few-stones-counted",
+    "size-against-count",
+    "nothing-inside-its-domain",
 ]
 
 
