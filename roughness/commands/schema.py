@@ -17,6 +17,7 @@ NAMES = (
     "check",
     "export",
     "handbook",
+    "measured-streams",
     "findings",
 )
 

@@ -9,6 +9,7 @@ from roughness.assessment.back_calculating import FoundN
 from roughness.assessment.cross_checking import CrossChecked
 from roughness.assessment.estimate import Estimate
 from roughness.commands.documents import CheckDocument, Listed, MergeDocument
+from roughness.comparison.stream_files import StreamFileShape
 from roughness.exports.columns import COLUMNS
 from roughness.findings import Finding, rule_table
 from roughness.handbook.toml_shape import HandbookShape
@@ -109,5 +110,6 @@ SCHEMAS: Final[Mapping[str, Callable[[], dict[str, Any]]]] = {
     "merge": lambda: _of(MergeDocument, "What `roughness merge --json` prints"),
     "export": _export,
     "handbook": lambda: _of(HandbookShape, "A handbook file (TOML)"),
+    "measured-streams": lambda: _of(StreamFileShape, "A file of measured streams (TOML)"),
     "findings": _findings,
 }

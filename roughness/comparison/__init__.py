@@ -11,6 +11,8 @@ They stand beside the additive estimate and never change it. One function a form
     channel_types      published n of channel types, looked up by words
     other_roads, plants    the estimates of one reach
     missing, measures  which measurement would help most, and how to take it
+    measured_streams, stream_files    streams with n from measured flow, and their files
+    likeness, analogues    which of them are most like a reach, and why, in words
 """
 
 from roughness.comparison.channel_types import ChannelType, ChannelTypes, parse_channel_types
