@@ -13,6 +13,7 @@ They stand beside the additive estimate and never change it. One function a form
     missing, measures  which measurement would help most, and how to take it
     measured_streams, stream_files    streams with n from measured flow, and their files
     likeness, analogues    which of them are most like a reach, and why, in words
+    blending           a judged n and measured ones weighed by their errors, to be looked at
 """
 
 from roughness.comparison.channel_types import ChannelType, ChannelTypes, parse_channel_types
