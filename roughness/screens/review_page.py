@@ -75,6 +75,7 @@ class ReviewPage(Screen[None]):
         self.pen, self.survey, self.places = pen, pen.survey, places
         self.keys = [k for k in places.keys if (row := places.row(k)) and row.place]
         self.at = self.keys.index(key)
+        self._known = {k: row for k in self.keys if (row := places.row(k))}
         self.items: tuple[Evidence, ...] = ()
         self._lines: list[Line] = []
         self._said = ""
@@ -112,10 +113,16 @@ class ReviewPage(Screen[None]):
 
     @property
     def row(self) -> Row:
-        """The value as it was read last."""
+        """The value as it was read last, also where it cannot be read any more."""
         row = self.places.row(self.keys[self.at])
-        assert row is not None, "a place that was opened stays known"
-        return row
+        if row is not None and row.place is not None:
+            self._known[self.keys[self.at]] = row
+        return self._known[self.keys[self.at]]
+
+    @property
+    def _is_gone(self) -> bool:
+        row = self.places.row(self.keys[self.at])
+        return row is None or row.place is None
 
     @property
     def line(self) -> Line:
@@ -130,8 +137,8 @@ class ReviewPage(Screen[None]):
 
     def draw(self, *, first: bool = False) -> None:
         """Show the page anew; the cursor stays on its line, or goes to the weightiest."""
-        if self.row.place is None:
-            self.say("! This place cannot be read any more.")
+        if self._is_gone:
+            self._draw_gone()
             return
         kept = None if first or not self._lines else self.line.key
         self._read_evidence()
@@ -153,6 +160,17 @@ class ReviewPage(Screen[None]):
         if not self._said:
             self.say()
         self._draw_item()
+
+    def _draw_gone(self) -> None:
+        self._lines, self.items = [], ()
+        width = max(40, self.size.width)
+        told = crumbs(self.row, self.at + 1, len(self.keys), width)
+        self.query_one("#crumbs", Static).update(told)
+        for name in ("page-sum", "who", "item"):
+            self.query_one(f"#{name}", Static).update("")
+        self.query_one(OptionList).clear_options()
+        self.query_one(Picture).display = False
+        self.say("! This place cannot be read any more, so nothing of it is shown.")
 
     def _room(self, who_lines: int) -> int:
         """Return how many lines the ledger may have, so that the marked one is told below."""

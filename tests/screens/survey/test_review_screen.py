@@ -1,5 +1,6 @@
 """A reviewer at the keyboard: the weakest first, questions, answers, verdicts."""
 
+import re
 import shutil
 from pathlib import Path
 from typing import Any
@@ -14,7 +15,7 @@ from roughness.desk.rows import Row, rows
 from roughness.desk.weakness import order
 from roughness.shelf.places import demo_folder
 from roughness.survey.choices import Choice, ObstructionChoice
-from roughness.survey.stream import Part
+from roughness.survey.stream import Part, Visit
 from roughness.trail.data import Gate, SegmentShare
 
 FLOOD, CHANNEL, BOOK = "design flood", "main channel", "usgs-wsp-2339"
@@ -254,7 +255,9 @@ async def test_accepting_names_the_place_and_n_first_and_is_told_on_every_screen
         await keyboard.press("a")
         for told in ("Weir pool, main channel, design flood", "n 0.", "estimated by Runa"):
             assert told in keyboard.words
-        assert "1 finding that asks has no answer" in keyboard.words
+        count = sum(finding.level == "ask" for finding in row_of(survey).open)
+        assert count > 0
+        assert re.search(rf"{count} findings? that asks? ha(s|ve) no answer", keyboard.words)
         await keyboard.press("escape")
         assert row_of(survey).status == "estimated"
         await keyboard.press("a", "enter")
@@ -348,6 +351,8 @@ async def test_all_without_findings_are_accepted_in_one_step_after_a_list(
     give_note(pen, "grass to the knee", "base")
     for factor in grades:
         give_note(pen, "seen and counted", factor)
+    for reach in ("Weir pool", "Mill race"):
+        pen.note_visit(reach, Visit(visit="June", on="2026-06-03", growth="leaf-on"))
     pen.add_part("Mill race", Part(part=CHANNEL, setting="channel"))
     judged(pen, "Mill race", grades)
     assert not [f for f in row_of(pen.survey).open if f.level != "tell"]
@@ -443,3 +448,38 @@ async def test_a_page_of_a_part_with_bed_and_banks_apart_shows_each_of_their_fac
             assert told in keyboard.text
         ledger = [line[1:22] for line in keyboard.text.splitlines()[6:20]]
         assert sum("variation" in line for line in ledger) == 1
+
+
+async def test_a_trail_that_is_destroyed_meanwhile_is_said_and_nothing_is_accepted(
+    open_app: Any, pen: Recorder
+) -> None:
+    path = pen.survey.reach_path("Weir pool")
+    async with open_app(pen.survey.folder, "Rea") as keyboard:
+        await opened_page(keyboard)
+        path.unlink()
+        keyboard.app.screen._look()
+        await keyboard.press()
+        assert "cannot be read any more" in keyboard.words
+        await keyboard.press("a")
+        if keyboard.screen == "Confirm":
+            await keyboard.press("enter")
+        assert keyboard.screen == "ReviewPage"
+        assert "!" in keyboard.text
+        await keyboard.press("i")
+        await keyboard.type("why?\n")
+        assert keyboard.screen == "Form"
+        assert "why?" in keyboard.text
+        await keyboard.press("escape", "right", "left", "escape", "escape")
+        assert keyboard.screen == "SurveyScreen"
+    assert not path.exists()
+
+
+async def test_words_and_signs_carry_the_meaning_without_colour(
+    open_app: Any, survey: SurveyFolder, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.setenv("NO_COLOR", "1")
+    async with open_app(survey.folder, "Rea") as keyboard:
+        await opened_page(keyboard)
+        line = next(x for x in keyboard.text.splitlines() if " n4 vegetation" in x)
+        assert line.lstrip().startswith("?")
+        assert "? ask: The vegetation drives n" in keyboard.text
