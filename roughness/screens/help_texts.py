@@ -49,6 +49,9 @@ g      adopt another n than the estimate, with a reason
 u      undo: says first what it takes back
 e      export the table of n for a model (.csv, .json)
 p      photos and documents of the reach: look, attach, watch a folder
+o      second opinion: judge this part blind, without seeing the first n;
+       for another person than the one who estimated it
+M      unite what two people wrote apart (only where the line above says so)
 l      timeline: who said what about this reach
 h      handbook: the published tables
 ↑ ↓ PageUp PageDown Home End   move
@@ -106,24 +109,24 @@ order is ours and has no source; its parts are added:
   open findings           1 for each that stops, 0.25 for each that asks
   spread to people's      width of the spread of the choices against what
                           experienced people differ by (from memory)
-  second opinion          how far the one furthest away is, by the same measure
+  second opinion          how far the one furthest away is, likewise
   factors nobody chose    twice their share
 
 What is accepted and unchanged comes last.
 
-On a page each factor has a line: its value and range, how much of the variance
-of n it drives, grade and what decides it, whether a note or a photo backs it.
-Below stand the sum, what was found and what was asked.
+On a page each factor has a line: its value and range, how much of the
+variance of n it drives, its grade and what decides it, whether a note or a
+photo backs it. Below stand the sum, what was found and what was asked.
 
   !  stops: mend it in the walk, or accept over it with a reason
-  ?  asks, and nobody answered yet          ✓  answered          ·  good to know
+  ?  asks, and nobody answered yet     ✓  answered     ·  good to know
   ~  carried over from elsewhere and never confirmed
 
 KEYS, IN THE LIST AND ON A PAGE
-Enter  open the place; on a page: answer the question or finding, read a factor
+Enter  open the place; on a page: answer a question or finding, or read
 /      in the list: show only lines with the words you type; Esc shows all again
-i      inquire: a question on the marked factor, or on the whole from any other
-       line; on a question it goes on from that one
+i      inquire: a question on the marked factor, or on the whole from the
+       line of the sum; on a question it goes on from that one
 a      accept: says first what is accepted and what speaks against it
 A      accept everything that has nothing open, after a list
 t      return to the crew, with the reason
