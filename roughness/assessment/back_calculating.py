@@ -11,7 +11,6 @@ from roughness.errors import InputError
 from roughness.findings import Finding
 from roughness.findings.measured_flow import FlowFacts, find_in_flow
 from roughness.hydraulics.back_calculation import (
-    GRAVITY,
     BackCalculation,
     Numbers,
     Reckoning,
@@ -20,6 +19,7 @@ from roughness.hydraulics.back_calculation import (
     relative_sd,
     relative_sd_of_uniform_flow,
 )
+from roughness.hydraulics.unit_systems import STANDARD_GRAVITY
 from roughness.quantities.printing import rounded
 from roughness.survey.measured_flow import MeasuredFlow, MeasurementErrors
 
@@ -198,7 +198,7 @@ def _found(flow: MeasuredFlow, n: float, relative: float, along: _Along | None) 
             expansion_loss=flow.expansion_loss if along else None,
             contraction_loss=flow.contraction_loss if along else None,
             alpha=tuple(s.alpha for s in flow.sections) if along else None,
-            gravity_ms2=GRAVITY,
+            gravity_ms2=STANDARD_GRAVITY,
             holds=HOLDS,
         ),
     )
@@ -219,7 +219,7 @@ def _facts(flow: MeasuredFlow, n: float, along: _Along | None) -> FlowFacts:
         velocity_heads_m=along.found.velocity_head.tolist() if along else (),
         depth_m=_mean(depths),
         froude=max(
-            flow.discharge_m3s / s.area_m2 / sqrt(GRAVITY * depth)
+            flow.discharge_m3s / s.area_m2 / sqrt(STANDARD_GRAVITY * depth)
             for s, depth in zip(flow.sections, depths, strict=True)
         ),
         widths_known=all(s.top_width_m is not None for s in flow.sections),

@@ -3,7 +3,7 @@
 from collections.abc import Iterator, Sequence
 from itertools import pairwise
 from math import pi
-from typing import Final
+from typing import Any, Final
 
 from roughness.assessment.reading import read_strictly
 from roughness.errors import InputError
@@ -12,6 +12,7 @@ from roughness.quantities.strict_json import read_json
 from roughness.survey.measured_flow import FlowSection, MeasuredFlow
 
 _MOST_SECTIONS: Final = 1000
+_MOST_EVENTS: Final = 1000
 # Faster than any river that was gauged: common practice, no source.
 _FASTEST_MS: Final = 20.0
 # A natural section with reversed flow at its edges has 2 to 3: common practice, no source.
@@ -19,8 +20,15 @@ _LARGEST_ALPHA: Final = 10.0
 _LARGEST_SLOPE: Final = 1.0
 
 
-def read_measured_flow(raw: bytes, where: str) -> MeasuredFlow:
-    """Read the JSON text of one measured flow; ``where`` names it in messages.
+def read_measured_flows(raw: bytes, where: str) -> tuple[MeasuredFlow, ...] | MeasuredFlow:
+    """Read the JSON text of one measured flow, or of a list of them.
+
+    Parameters
+    ----------
+    raw : bytes
+        A JSON object, or a list of at most 1000: the events of one reach, or of several.
+    where : str
+        Names it in messages.
 
     Raises
     ------
@@ -28,6 +36,21 @@ def read_measured_flow(raw: bytes, where: str) -> MeasuredFlow:
         For anything that is not such a document, or cannot be measured: one sentence.
     """
     document = read_json(raw, where)
+    if not isinstance(document, list):
+        return _flow_from(document, where)
+    if not 0 < len(document) <= _MOST_EVENTS:
+        raise InputError(
+            f"a list of {len(document)} flows", where=where, wanted=f"1 to {_MOST_EVENTS} are due"
+        )
+    return tuple(_flow_from(one, flow_of(where, i)) for i, one in enumerate(document, 1))
+
+
+def flow_of(where: str, number: int) -> str:
+    """Return how messages name one flow of a list."""
+    return f"{where}: flow {number}"
+
+
+def _flow_from(document: Any, where: str) -> MeasuredFlow:
     if not isinstance(document, dict):
         raise InputError("no JSON object", where=where, wanted='it starts with {"discharge_m3s":')
     flow = read_strictly(MeasuredFlow, document, where)

@@ -1,4 +1,7 @@
-"""n of a reach from a measured flow: its discharge, sections and water levels, as JSON."""
+"""n of a reach from a measured flow: its discharge, sections and water levels, as JSON.
+
+A list of flows gives a list of n, each with its water level: n against stage.
+"""
 
 import argparse
 
@@ -20,7 +23,11 @@ def run(args: argparse.Namespace) -> int:
 
     raw, where = read_given(args.file, LARGEST)
     from roughness.assessment.back_calculating import n_from_flow
-    from roughness.assessment.measured_flow_reading import read_measured_flow
+    from roughness.assessment.measured_flow_reading import flow_of, read_measured_flows
 
-    print_json(n_from_flow(read_measured_flow(raw, where), where))
+    flows = read_measured_flows(raw, where)
+    if isinstance(flows, tuple):
+        print_json([n_from_flow(flow, flow_of(where, i)) for i, flow in enumerate(flows, 1)])
+    else:
+        print_json(n_from_flow(flows, where))
     return DONE

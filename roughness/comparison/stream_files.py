@@ -15,20 +15,19 @@ from roughness.comparison.measured_streams import (
 )
 from roughness.errors import InputError
 from roughness.handbook.toml_shape import Key, Text, place_of
+from roughness.hydraulics.unit_systems import FOOT_M
 from roughness.quantities.foreign_text import nearest, printable
 from roughness.quantities.printing import show_value
 from roughness.quantities.strict_toml import read_toml
 from roughness.survey.words import Growth, Setting
 
 Positive = Annotated[float, Field(gt=0)]
-# Exact by definition of the international foot (1959).
-_FT: Final = 0.3048
 _ORIGINALS: Final[dict[str, tuple[str, float]]] = {
-    "discharge_ft3s": ("discharge_m3s", _FT**3),
-    "area_ft2": ("area_m2", _FT**2),
-    "hydraulic_radius_ft": ("hydraulic_radius_m", _FT),
-    "depth_ft": ("depth_m", _FT),
-    "velocity_fts": ("velocity_ms", _FT),
+    "discharge_ft3s": ("discharge_m3s", FOOT_M**3),
+    "area_ft2": ("area_m2", FOOT_M**2),
+    "hydraulic_radius_ft": ("hydraulic_radius_m", FOOT_M),
+    "depth_ft": ("depth_m", FOOT_M),
+    "velocity_fts": ("velocity_ms", FOOT_M),
 }
 # Figures are printed with three digits or more.
 _ROUNDING: Final = 0.005

@@ -22,9 +22,10 @@ from typing import Final
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
+from roughness.hydraulics.unit_systems import STANDARD_GRAVITY
+
 Numbers = NDArray[np.float64]
 
-GRAVITY: Final = 9.80665
 EXPANSION_LOSS: Final = 0.5
 CONTRACTION_LOSS: Final = 0.0
 
@@ -66,7 +67,7 @@ def back_calculate(
     *,
     expansion_loss: float = EXPANSION_LOSS,
     contraction_loss: float = CONTRACTION_LOSS,
-    gravity: float = GRAVITY,
+    gravity: float = STANDARD_GRAVITY,
 ) -> BackCalculation:
     """Return n of a reach from a measured discharge and the surveyed water surface.
 

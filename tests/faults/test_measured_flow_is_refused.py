@@ -39,13 +39,22 @@ def lacking(name: str) -> str:
     return json.dumps(FLOW | {"sections": sections})
 
 
+def second(flow: str) -> str:
+    return f"[{json.dumps(ONE)}, {flow}]"
+
+
 def single(**changed: Any) -> str:
     return json.dumps({key: value for key, value in (ONE | changed).items() if value is not None})
 
 
 WRONG: dict[str, tuple[str, str]] = {
     "empty": ("", "it is empty"),
-    "no object": ("[1]", "no JSON object"),
+    "no object": ("[1]", "flow 1: no JSON object"),
+    "no flow": ("[]", "a list of 0 flows; 1 to 1000 are due"),
+    "the second of two": (second(whole(discharge_m3s=-1)), "flow 2: discharge_m3s: -1 is not"),
+    "the second falls not": (
+        second(of_section(3, water_level_m=10.4)), "flow 2: sections: the energy line does not",
+    ),
     "unknown key": (whole(discharge=30), "did you mean 'discharge_m3s'"),
     "text for a number": (whole(discharge_m3s="30,5"), "a point: 30.5"),
     "NaN": ('{"discharge_m3s": NaN}', "NaN is not a number"),

@@ -99,6 +99,17 @@ def test_one_section_with_a_slope_is_uniform_flow(tmp_path: Path, capsys: Captur
     assert rules(found) == ["measured-sections-few"]
 
 
+def test_many_flows_give_n_against_stage(tmp_path: Path, capsys: Capture) -> None:
+    other = FOUR | {"discharge_m3s": 20.0, "errors": ERRORS}
+    file = tmp_path / "flows.json"
+    file.write_text(json.dumps([FOUR, other]), encoding="utf-8")
+    assert main(["backcalc", str(file)]) == 0
+    first, second = json.loads(capsys.readouterr().out)
+    assert first == backcalc(tmp_path, capsys, FOUR)
+    assert second == backcalc(tmp_path, capsys, other)
+    assert second["water_level_m"] == FOUR["sections"][0]["water_level_m"]
+
+
 def test_the_froude_number_uses_the_width_of_the_water(tmp_path: Path, capsys: Capture) -> None:
     alone = {"area_m2": 24.0, "wetted_perimeter_m": 15.2, "top_width_m": 12.0}
     found = backcalc(tmp_path, capsys, {"discharge_m3s": 38, "slope": 0.0021, "sections": [alone]})
