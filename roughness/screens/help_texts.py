@@ -124,7 +124,7 @@ photo backs it. Below stand the sum, what was found and what was asked.
 
 KEYS, IN THE LIST AND ON A PAGE
 Enter  open the place; on a page: answer a question or finding, or read
-/      in the list: show only lines with the words you type; Esc shows all again
+/      in the list: show only lines with the words you type; Esc ends it
 i      inquire: a question on the marked factor, or on the whole from the
        line of the sum; on a question it goes on from that one
 a      accept: says first what is accepted and what speaks against it
@@ -141,7 +141,7 @@ u      undo your last line of this reach: says first which
 Esc    back
 
 Whoever estimated a value cannot accept it, unless the survey says that one
-person does both. An acceptance stands while value, range, grade, criterion and
-flow condition stand; a new photo, caption or question does not touch it.
-n is a judgement: local codes and a licensed practitioner's review come first.
+person does both. An acceptance stands while value, range, grade, criterion
+and flow condition stand; a new photo, caption or question does not touch it.
+n is a judgement; local codes and a licensed practitioner's review come first.
 """
