@@ -130,7 +130,7 @@ def _refuse_stems(stems: StemSample, depth_m: float | None, where: str) -> None:
         raise InputError("no stems were counted", where=where, wanted="leave stems out")
     for row, counted in enumerate(stems.counted):
         height = counted.height_m
-        wrong = counted.number < 0 or not 0 < counted.diameter_m <= 20
+        wrong = not 0 <= counted.number <= 1_000_000 or not 0 < counted.diameter_m <= 20
         if wrong or (height is not None and not 0 < height <= 200):
             raise InputError(
                 "this class of stems cannot be used",

@@ -19,7 +19,8 @@ from roughness.errors import InputError
 
 PERCENTS: Final = (16, 50, 65, 75, 84, 90)
 _NORMAL_95: Final = 1.96
-LARGEST_MM: Final = 100_000.0
+LARGEST_MM: Final = 20_000.0
+_MOST_STONES: Final = 1_000_000
 
 
 @dataclass(frozen=True, slots=True)
@@ -112,11 +113,13 @@ def from_classes(
     (22.63, 100)
     """
     edges = _edges(from_mm, to_mm)
-    tally = np.asarray(counts, dtype=np.int64)
-    stones = int(tally.sum())
-    if (tally < 0).any() or stones < 2:
-        raise InputError("the tally has no two stones", wanted="counts of 0 or more by class")
-    finer = np.concatenate([[0.0], np.cumsum(tally) / stones])
+    stones = sum(counts)
+    if any(n < 0 for n in counts) or not 2 <= stones <= _MOST_STONES:
+        raise InputError(
+            f"{stones} stones are no tally",
+            wanted="counts of 0 or more by class, 100 or more in all",
+        )
+    finer = np.concatenate([[0.0], np.cumsum(counts) / stones])
     _refuse_no_stones(edges[1:])
     # Empty classes at both ends are no part of the curve; a first class from 0 has no size to
     # begin at.
@@ -129,7 +132,12 @@ def from_classes(
 
 def _edges(from_mm: Sequence[float], to_mm: Sequence[float]) -> Numbers:
     lower, upper = numbers(from_mm), numbers(to_mm)
-    in_order = len(lower) > 0 and (lower < upper).all() and (lower[1:] == upper[:-1]).all()
+    in_order = (
+        len(lower) > 0
+        and lower[0] >= 0
+        and (lower < upper).all()
+        and (lower[1:] == upper[:-1]).all()
+    )
     if not in_order:
         raise InputError(
             "the size classes do not follow each other",
