@@ -47,13 +47,10 @@ _USAGE = """\
 usage: roughness [SURVEY]            the screens
        roughness VERB ... [--help]   one of the verbs below
 
-Documents Manning's n for every reach of a surveyed stream: the value, its
-range and the reasons, so that somebody else can check them.
+Documents Manning's n for every reach of a surveyed stream, with its reasons.
 
 {verbs}
-
-A FILE may be - for standard input. n is a judgement: calibrate it to observed
-flows where they exist, and let a licensed practitioner review it.
+FILE may be - (standard input). n is a judgement: calibrate it; have it reviewed
 """
 
 
