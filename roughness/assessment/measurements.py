@@ -5,22 +5,24 @@ from itertools import pairwise
 from typing import Final
 
 from roughness.assessment.reading import read_strictly
+from roughness.comparison.pebbles import LARGEST_MM, SMALLEST_MM
 from roughness.errors import InputError
 from roughness.quantities.printing import show_value
 from roughness.quantities.strict_json import read_json
 from roughness.survey.cross_check import CrossCheck, Judged, StemSample
 
-# Largest value that a stream can have, and what a larger one mostly comes from. Ours, no source.
-_LARGEST: Final[dict[str, tuple[float, str]]] = {
-    "slope": (0.5, "a fall in m per m along the channel: 2 % is 0.02"),
-    "hydraulic_radius_m": (100, "metres"),
-    "depth_m": (200, "metres"),
-    "max_depth_m": (300, "metres"),
-    "area_m2": (1e6, "square metres"),
-    "velocity_ms": (30, "metres per second"),
-    "gradation": (100, "sqrt(d84/d16), 1 or more"),
+# Smallest and largest value that a stream can have, and what is meant: a value beyond is mostly
+# one in another unit. Ours, no source.
+_POSSIBLE: Final[dict[str, tuple[float, float, str]]] = {
+    "slope": (1e-7, 0.5, "a fall in m per m along the channel: 2 % is 0.02"),
+    "hydraulic_radius_m": (1e-3, 100, "metres"),
+    "depth_m": (1e-3, 200, "metres"),
+    "max_depth_m": (1e-3, 300, "metres"),
+    "area_m2": (1e-4, 1e6, "square metres"),
+    "velocity_ms": (1e-4, 30, "metres per second"),
+    "gradation": (1, 100, "sqrt(d84/d16), 1 or more"),
 }
-_LARGEST_MM: Final = 20_000.0
+_POSSIBLE_MM: Final = (SMALLEST_MM, LARGEST_MM, "millimetres")
 _SIZES: Final = ("d16_mm", "d50_mm", "d65_mm", "d75_mm", "d84_mm", "d90_mm")
 _LARGEST_N: Final = 10.0
 
@@ -72,19 +74,18 @@ def checked_cross_check(given: CrossCheck, where: str) -> None:
 
 
 def _refuse_impossible(name: str, value: float, where: str) -> None:
-    largest, wanted = _LARGEST.get(name, (_LARGEST_MM, "millimetres"))
-    least = 1.0 if name == "gradation" else 0.0
-    if value <= least and not (name == "gradation" and value == least):
+    least, most, meant = _POSSIBLE.get(name, _POSSIBLE_MM)
+    if value <= 0:
         raise InputError(
             f"{show_value(value)} cannot be measured",
             where=f"{where}: {name}",
-            wanted=f"{'1 or more' if least else 'above 0'} is due; leave out what is unknown",
+            wanted="above 0 is due; leave out what is unknown",
         )
-    if value > largest:
+    if not least <= value <= most:
         raise InputError(
-            f"{show_value(value)} is too large for a stream",
+            f"{value:g} is no value of a stream",
             where=f"{where}: {name}",
-            wanted=f"it is meant in {wanted}" if name != "gradation" else wanted,
+            wanted=f"it is meant in {meant}" if name != "gradation" else f"it is {meant}",
         )
 
 

@@ -19,6 +19,7 @@ from roughness.errors import InputError
 
 PERCENTS: Final = (16, 50, 65, 75, 84, 90)
 _NORMAL_95: Final = 1.96
+SMALLEST_MM: Final = 1e-4
 LARGEST_MM: Final = 20_000.0
 _MOST_STONES: Final = 1_000_000
 
@@ -147,10 +148,10 @@ def _edges(from_mm: Sequence[float], to_mm: Sequence[float]) -> Numbers:
 
 
 def _refuse_no_stones(sizes: Numbers) -> None:
-    wrong = sizes[~((sizes > 0) & (sizes <= LARGEST_MM))]
+    wrong = sizes[~((sizes >= SMALLEST_MM) & (sizes <= LARGEST_MM))]
     if len(wrong):
         raise InputError(
-            f"a stone of {wrong[0]:g} mm", wanted=f"sizes above 0 and up to {LARGEST_MM:g} mm"
+            f"a stone of {wrong[0]:g} mm", wanted=f"sizes of {SMALLEST_MM:g} to {LARGEST_MM:g} mm"
         )
 
 

@@ -83,6 +83,10 @@ def _named(others: Sequence[OtherN]) -> str:
     return enumerate_words(shown[:4] + more if more else shown)
 
 
+def _mm(size: float) -> str:
+    return show_value(float(f"{size:.3g}"))
+
+
 def _base_against_grains(compared: Compared) -> Iterator[str]:
     others = _inside(compared, "grain")
     if compared.base and (how := _apart(compared.base, others)):
@@ -143,13 +147,9 @@ def _regime(compared: Compared) -> Iterator[str]:
 def _few_stones(compared: Compared) -> Iterator[str]:
     if compared.count and compared.count.stones < ENOUGH_STONES:
         d84 = next(p for p in compared.count.percentiles if p.percent == 84)
-        known = d84.low_mm is not None and d84.high_mm is not None
-        between = (
-            f"the d84 is between {show_value(round(d84.low_mm, 1))} and "
-            f"{show_value(round(d84.high_mm, 1))} mm"
-            if known and d84.low_mm is not None and d84.high_mm is not None
-            else "the d84 is not told by them"
-        )
+        between = "the d84 is not told by them"
+        if d84.low_mm is not None and d84.high_mm is not None:
+            between = f"the d84 is between {_mm(d84.low_mm)} and {_mm(d84.high_mm)} mm"
         yield f"{compared.count.stones} stones were counted, and {between}; count 100 or more."
 
 
@@ -163,7 +163,7 @@ def _sizes_against_count(compared: Compared) -> Iterator[str]:
         if not of.low_mm <= mm <= of.high_mm:
             yield (
                 f"The d{percent} was given as {show_value(mm)} mm and the count says "
-                f"{show_value(round(of.mm, 1))} mm; the given one was used: check which is right."
+                f"{_mm(of.mm)} mm; the given one was used: check which is right."
             )
 
 
