@@ -26,8 +26,14 @@ from roughness.trail.telling import describe_line, withdrawable
 if TYPE_CHECKING:
     from roughness.screens.survey import SurveyScreen
 
-_VISIT, _CONDITION, _PART, _REACH = range(4)
-_TO_ADD: Final = ("a visit", "a flow condition", "a part of the cross-section", "a reach")
+_VISIT, _CONDITION, _PART, _REACH, _NOTE = range(5)
+_TO_ADD: Final = (
+    "a visit",
+    "a flow condition",
+    "a part of the cross-section",
+    "a reach",
+    "a note on the reach",
+)
 _OWN_PART: Final = "a part with a name of its own"
 
 
@@ -165,6 +171,9 @@ class Adding:
             self._kept()
             if visit:
                 self._say(f"Visit {visit} to {line.key[0]} noted.", wrong=False)
+        elif picked == _NOTE and line is not None:
+            await self._ask(survey_forms.note_form(pen, line.row.reach))
+            self._kept()
         elif picked == _PART and line is not None:
             part = await self._first_part(line.key[0])
             self._kept((line.key[0], part) if part else None)

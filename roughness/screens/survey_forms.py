@@ -162,6 +162,27 @@ def reach_form(pen: Recorder) -> Form[str]:
     )
 
 
+def note_form(pen: Recorder, reach: Reach) -> Form[str]:
+    """Ask for what is to be known of the reach; an empty note takes the old one back."""
+
+    def take(typed: Mapping[str, str]) -> str:
+        pen.describe_reach(reach.reach, note=text_or_none(typed["note"]))
+        return reach.reach
+
+    return Form(
+        f"Note on {printable(reach.reach)}",
+        [
+            Field(
+                key="note",
+                label="Note",
+                value=reach.note or "",
+                hint="such as: the willows begin at the fence, hence the jump",
+            )
+        ],
+        take,
+    )
+
+
 def adopt_form(pen: Recorder, line: SurveyLine) -> Form[str]:
     """Ask for the n that goes to the model in place of the estimate, and why."""
     row = line.row

@@ -164,3 +164,15 @@ async def test_lengths_typed_as_metres_are_recorded_as_metres(
     ford = state.reach("Ford")
     assert state.described.length_unit == "m"
     assert ford is not None and (ford.reach_from, ford.reach_to) == (320, 700)
+
+
+async def test_a_note_on_the_reach_is_kept_and_an_empty_one_takes_it_back(
+    open_app: Any, survey: SurveyFolder
+) -> None:
+    async with open_app(survey.folder) as keyboard:
+        await keyboard.press("home", "plus", "5")
+        await keyboard.type("narrows at the weir\n")
+        assert SurveyFolder(survey.folder).reach("Weir pool").note == "narrows at the weir"
+        await keyboard.press("plus", "5", "ctrl+u")
+        await keyboard.type("\n")
+    assert SurveyFolder(survey.folder).reach("Weir pool").note is None
