@@ -65,6 +65,7 @@ class EvidenceScreen(Screen[None]):
         yield Static("", id="title")
         yield OptionList(id="items", compact=True)
         yield Static("", id="detail")
+        yield Static("", id="message")
         yield Static("", id="drop")
         yield KeyLine()
 
@@ -154,19 +155,20 @@ class EvidenceScreen(Screen[None]):
     def _run(self, steps: Callable[[], Awaitable[None]]) -> None:
         if not self._asks:
             self._asks = True
+            self._say("")
             self.run_worker(self._said(steps), group="dialog")
 
     async def _said(self, steps: Callable[[], Awaitable[None]]) -> None:
         try:
             await steps()
         except RoughnessError as error:
-            self._say(str(error), wrong=True)
+            self._say(f"! {error}")
         finally:
             self._asks = False
 
-    def _say(self, sentence: str, *, wrong: bool = False) -> None:
-        severity: Any = "warning" if wrong else "information"
-        self.notify(printable(sentence), severity=severity, timeout=8, markup=False)
+    def _say(self, sentence: str) -> None:
+        """Tell something in a line of its own, until something else is done."""
+        self.query_one("#message", Static).update(Text(printable(sentence), style="bold"))
 
     async def _ask(self, dialog: Screen[Any]) -> Any:
         return await self.app.push_screen_wait(dialog)
@@ -176,10 +178,8 @@ class EvidenceScreen(Screen[None]):
         self._read()  # also after Esc: copying may have been under way
         if attached is None:
             return
-        name = attached.line.data["name"]
-        self._say(f"Attached: {name}." if attached.is_new else f"It was here already: {name}.")
-        for tell in attached.tells:
-            self._say(tell, wrong=True)
+        came = "Attached" if attached.is_new else "It was here already"
+        self._say("; ".join([f"{came}: {attached.line.data['name']}", *attached.tells]) + ".")
 
     def check_action(self, action: str, _: tuple[object, ...]) -> bool | None:
         """Leave out what needs an item."""

@@ -79,4 +79,4 @@ def without_first(line: SurveyLine, hidden: Place | None) -> SurveyLine:
     if list(map(same_name_key, here)) != list(map(same_name_key, there)):
         return line
     bare = type(row)(order=row.order, reach=replace(row.reach, note=None), part=row.part)
-    return SurveyLine(row=bare, apart="hidden: a second opinion is under way")
+    return SurveyLine(row=bare, apart="hidden: second opinion")
