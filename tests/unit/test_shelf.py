@@ -197,6 +197,8 @@ print(tables_folder())
 print(demo_folder())
 from roughness.desk.measured_streams import measured_streams
 print(*(stream.key for stream in measured_streams().streams))
+from roughness.desk.cross_checking import channel_types
+print(len(channel_types().rows))
 print(*(load_handbook(key).sha256 for key in ("cowan-1956", "scs-1963", "usgs-wsp-2339")))
 """
 
