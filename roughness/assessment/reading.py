@@ -97,7 +97,7 @@ def _unknown_key(kind: type, path: list[str], where: str) -> InputError:
     if key in _RESERVED:
         return InputError(_RESERVED[key], where=place)
     holder = _plain(_type_at(kind, path[:-1]))
-    known = [f.name for f in fields(holder)] if is_dataclass(holder) else []
+    known = _keys_of(holder) if is_dataclass(holder) else []
     hint = nearest(key, known)
     listed = f"known are {enumerate_words(known)}"
     return InputError(
@@ -112,7 +112,8 @@ def _type_at(kind: Any, path: list[str]) -> Any:
     for step in path:
         kind = _plain(kind)
         if is_dataclass(kind):
-            kind = get_type_hints(kind).get(step, object)
+            hints = get_type_hints(kind)
+            kind = hints.get(step, hints.get(f"{step}_", object))
         elif get_origin(kind) is tuple:
             kind = get_args(kind)[0]
         else:
@@ -137,11 +138,16 @@ def _wanted(kind: type, path: list[str], met: Any = None) -> str:
     if due is str:
         return "a text in quotes is due"
     if is_dataclass(due):
-        return f"an object with {enumerate_words([f.name for f in fields(due)][:6], 'or')} is due"
+        return f"an object with {enumerate_words(_keys_of(due)[:6], 'or')} is due"
     if get_origin(due) is tuple:
         return "a list is due"
     words = [str(word) for word in get_args(due)]
     return f"one of {', '.join(words)}" if words else "see `roughness schema estimate`"
+
+
+def _keys_of(kind: Any) -> list[str]:
+    """Return the keys as they are written; a field that Python reserves ends in ``_``."""
+    return [f.name.removesuffix("_") for f in fields(kind)]
 
 
 def _shown(met: Any) -> str:

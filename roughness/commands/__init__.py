@@ -32,6 +32,7 @@ VERBS: dict[str, str] = {
     "attach": "copy photos or documents of a reach into the survey",
     "adopt": "let another n than the estimate go to the model, with a reason",
     "estimate": "n, range, spread, findings and reasoning for one part",
+    "section": "depth, velocity and composite n of a cross-section",
     "backcalc": "n of a reach from a measured flow",
     "crosscheck": "other roads to n: grain, slope and channel-type values on one axis",
     "check": "trails, handbooks and findings of a survey",

@@ -8,6 +8,8 @@ from roughness.commands.results import print_json
 NAMES = (
     "estimate",
     "estimate-output",
+    "section",
+    "section-output",
     "crosscheck",
     "crosscheck-output",
     "backcalc",

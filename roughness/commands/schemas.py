@@ -8,14 +8,17 @@ from pydantic import TypeAdapter
 from roughness.assessment.back_calculating import FoundN
 from roughness.assessment.cross_checking import CrossChecked
 from roughness.assessment.estimate import Estimate
+from roughness.assessment.section_document import SectionFlow
 from roughness.commands.documents import CheckDocument, Listed, MergeDocument
 from roughness.comparison.stream_files import StreamFileShape
 from roughness.exports.columns import COLUMNS
 from roughness.findings import Finding, rule_table
 from roughness.handbook.toml_shape import HandbookShape
+from roughness.hydraulics.composite_relations import RELATIONS
 from roughness.survey.choices import Judgement
 from roughness.survey.cross_check import CrossCheck
 from roughness.survey.measured_flow import MeasuredFlow
+from roughness.survey.sections import Section
 from roughness.trail.kinds import trail_schema
 
 _DIALECT: Final = {"$schema": "https://json-schema.org/draft/2020-12/schema"}
@@ -64,6 +67,18 @@ def _only_used(schema: dict[str, Any]) -> dict[str, Any]:
     return schema | {"$defs": kept}
 
 
+def _section_output() -> dict[str, Any]:
+    relations = {
+        key: {"assumption": relation.assumption, "source": relation.source}
+        for key, relation in RELATIONS.items()
+    }
+    return _of(SectionFlow, "What `roughness section` prints") | {
+        "description": "low and high are there where an n has a range, composite_n where there is"
+        " one part; `relations` says what each composite n assumes.",
+        "relations": relations,
+    }
+
+
 def _export() -> dict[str, Any]:
     types = {"string": ["string", "null"], "number": ["number", "null"]}
     cells = {
@@ -104,6 +119,8 @@ SCHEMAS: Final[Mapping[str, Callable[[], dict[str, Any]]]] = {
     "crosscheck-output": _cross_check_output,
     "backcalc": lambda: _of(MeasuredFlow, "Input of `roughness backcalc`"),
     "backcalc-output": lambda: _of(FoundN, "What `roughness backcalc` prints"),
+    "section": lambda: _of(Section, "Input of `roughness section`"),
+    "section-output": _section_output,
     "trail": trail_schema,
     "list": lambda: _of(tuple[Listed, ...], "What `roughness list --json` prints"),
     "check": lambda: _of(CheckDocument, "What `roughness check --json` prints"),

@@ -11,6 +11,7 @@ from roughness.findings import (
     double_counting,
     measured_flow,
     merge_conflict,
+    over_section,
     over_survey,
     ranges,
     setting_and_flow,
@@ -91,6 +92,7 @@ def find(facts: Facts) -> list[list[Finding]]:
 
 
 def rule_table() -> tuple[RuleInWords, ...]:
-    """Return every rule in words: an estimate's, a survey's, a measured flow's, a cross-check's."""
+    """Return every rule in words: an estimate's, a survey's, a section's and more."""
     whole_survey = (*over_survey.RULES, merge_conflict.RULE)
-    return (*RULES, *whole_survey, *measured_flow.RULES, *cross_check.RULES)
+    of_water = (*over_section.RULES, *measured_flow.RULES)
+    return (*RULES, *whole_survey, *of_water, *cross_check.RULES)

@@ -1,8 +1,10 @@
 """Every relation for one n of a part whose bed and banks differ, with what each one assumes.
 
 They answer different questions and need not agree: in a trapezoid with rough banks the largest
-can be twice the smallest. They are for segments within one part. Between channel and flood
-plains none of them serves: there conveyances add (:mod:`roughness.hydraulics.conveyance`).
+can be twice the smallest. A vertical wall is a segment without area: the relations that weight
+by area or radius leave it out, and only those that weight by perimeter see it. They are for
+segments within one part. Between channel and flood plains none of them serves: there
+conveyances add (:mod:`roughness.hydraulics.conveyance`).
 The formulas are from memory (Chow 1959, chapter 6; Yen 1991 and 2002); that of Horton and
 Einstein was seen in three places.
 """
@@ -58,7 +60,7 @@ def segments_of(n: ArrayLike, area: ArrayLike, perimeter: ArrayLike, depth: Arra
 
 
 def composite_n(segments: Segments) -> dict[str, Any]:
-    """Return the n of the part by every relation, (...) each; NaN where no segment is wet.
+    """Return the n of the part by every relation, (...) each; not finite where one is not defined.
 
     >>> found = composite_n(segments_of([0.05, 0.03, 0.08], [2.25, 9, 2.25],
     ...                                 [3.3541, 6, 3.3541], [0.75, 1.5, 0.75]))
@@ -140,7 +142,10 @@ def _yen_shear(s: Segments) -> Any:
 
 def _yen_slope(s: Segments) -> Any:
     """Return sum(n P / R_i^(1/6)) / (P / R^(1/6))."""
-    over = np.asarray(ratio(s.n * s.perimeter, s.radius ** (1 / 6))).sum(axis=-1)
+    zeros = np.zeros(s.n.shape)
+    # Infinite with a vertical wall, whose radius is 0: this relation is none for it.
+    each = np.divide(s.n * s.perimeter, s.radius ** (1 / 6), out=zeros, where=s.perimeter > 0)
+    over = each.sum(axis=-1)
     return _plain(over / s.perimeter.sum(axis=-1) * _whole_radius(s) ** (1 / 6))
 
 

@@ -86,17 +86,23 @@ def water_over(lines: Lines, level: ArrayLike) -> Water:
     >>> water_over(lines_between([0, 0, 4, 4], [2, 0, 0, 2]), 1.5)
     Water(area=6.0, perimeter=7.0, width=4.0)
     """
+    wet = water_over_each(lines, level)
+    return Water(_sum(wet.area), _sum(wet.perimeter), _sum(wet.width))
+
+
+def water_over_each(lines: Lines, level: ArrayLike) -> Water:
+    """Return area, wetted perimeter and width over each line by itself, (..., lines).
+
+    As :func:`water_over`; what stands over a line that runs backwards is negative.
+    """
     surface = np.asarray(level, dtype=np.float64)[..., None]
     d0, d1 = surface - lines.z0, surface - lines.z1
     depths = np.maximum(d0, 0) + np.maximum(d1, 0)
     reach = np.abs(d0) + np.abs(d1)
     wet = np.divide(depths, reach, out=np.zeros_like(reach), where=reach > 0)
     run = lines.x1 - lines.x0
-    return Water(
-        _sum(run * wet * depths / 2),
-        _sum(np.hypot(run, lines.z1 - lines.z0) * wet),
-        _sum(run * wet),
-    )
+    length = np.hypot(run, lines.z1 - lines.z0)
+    return Water(run * wet * depths / 2, length * wet, run * wet)
 
 
 def water_below(x: ArrayLike, z: ArrayLike, level: ArrayLike) -> Water:
