@@ -21,7 +21,7 @@ from roughness.hydraulics.back_calculation import (
 )
 from roughness.hydraulics.unit_systems import STANDARD_GRAVITY
 from roughness.quantities.printing import rounded
-from roughness.survey.measured_flow import MeasuredFlow, MeasurementErrors
+from roughness.survey.measured_flow import CheckedFlow, MeasurementErrors
 
 RELATION: Final = (
     "energy equation over the sections with Manning friction, the friction slope from the"
@@ -93,13 +93,13 @@ class _Along:
     subreaches: tuple[Subreach, ...]
 
 
-def n_from_flow(flow: MeasuredFlow, where: str = "measured flow") -> FoundN:
+def n_from_flow(flow: CheckedFlow, where: str = "measured flow") -> FoundN:
     """Return n of a reach from a measured flow.
 
     Parameters
     ----------
-    flow : MeasuredFlow
-        One that ``check_measured_flow`` took.
+    flow : CheckedFlow
+        As ``read_measured_flows`` and ``checked_flow`` return it.
     where : str
         Names the input in messages.
 
@@ -114,7 +114,7 @@ def n_from_flow(flow: MeasuredFlow, where: str = "measured flow") -> FoundN:
         return _found(flow, n, relative, None)
     found = back_calculate(
         flow.discharge_m3s,
-        [s.distance_m or 0.0 for s in flow.sections],
+        [s.distance_m for s in flow.sections],
         [s.area_m2 for s in flow.sections],
         [s.wetted_perimeter_m for s in flow.sections],
         [s.water_level_m or 0.0 for s in flow.sections],
@@ -128,7 +128,7 @@ def n_from_flow(flow: MeasuredFlow, where: str = "measured flow") -> FoundN:
     return _found(flow, float(found.whole.n), relative, _Along(found, _subreaches(flow, found)))
 
 
-def _uniform(flow: MeasuredFlow) -> tuple[float, float]:
+def _uniform(flow: CheckedFlow) -> tuple[float, float]:
     (section,), errors = flow.sections, flow.errors
     n = n_of_uniform_flow(
         flow.discharge_m3s, section.area_m2, section.wetted_perimeter_m, flow.slope or 0.0
@@ -162,10 +162,10 @@ def _contradiction(found: BackCalculation, where: str) -> InputError:
     )
 
 
-def _subreaches(flow: MeasuredFlow, found: BackCalculation) -> tuple[Subreach, ...]:
+def _subreaches(flow: CheckedFlow, found: BackCalculation) -> tuple[Subreach, ...]:
     part = found.subreaches
     sds = part.n * _relative_sd(part, flow.errors)
-    lengths = np.abs(np.diff([s.distance_m or 0.0 for s in flow.sections]))
+    lengths = np.abs(np.diff([s.distance_m for s in flow.sections]))
     return tuple(
         Subreach(
             n=_known(float(part.n[i])),
@@ -179,7 +179,7 @@ def _subreaches(flow: MeasuredFlow, found: BackCalculation) -> tuple[Subreach, .
     )
 
 
-def _found(flow: MeasuredFlow, n: float, relative: float, along: _Along | None) -> FoundN:
+def _found(flow: CheckedFlow, n: float, relative: float, along: _Along | None) -> FoundN:
     facts = _facts(flow, n, along)
     return FoundN(
         n=n,
@@ -204,7 +204,7 @@ def _found(flow: MeasuredFlow, n: float, relative: float, along: _Along | None) 
     )
 
 
-def _facts(flow: MeasuredFlow, n: float, along: _Along | None) -> FlowFacts:
+def _facts(flow: CheckedFlow, n: float, along: _Along | None) -> FlowFacts:
     # The hydraulic radius is less than the mean depth, so that it gives an upper bound of the
     # Froude number and a reach that is too short for it is too short for the depth.
     depths = [s.area_m2 / (s.top_width_m or s.wetted_perimeter_m) for s in flow.sections]
@@ -229,13 +229,13 @@ def _facts(flow: MeasuredFlow, n: float, along: _Along | None) -> FlowFacts:
     )
 
 
-def _errors(flow: MeasuredFlow) -> list[tuple[str, float | None]]:
+def _errors(flow: CheckedFlow) -> list[tuple[str, float | None]]:
     errors, alone = flow.errors, len(flow.sections) == 1
     of_fall = ("slope", errors.slope_percent) if alone else ("water level", errors.water_level_m)
     return [("discharge", errors.discharge_percent), of_fall, ("area", errors.area_percent)]
 
 
-def _given(flow: MeasuredFlow) -> bool:
+def _given(flow: CheckedFlow) -> bool:
     return any(value is not None for _, value in _errors(flow))
 
 

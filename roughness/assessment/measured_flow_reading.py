@@ -2,25 +2,21 @@
 
 from collections.abc import Iterator, Sequence
 from itertools import pairwise
-from math import pi
 from typing import Any, Final
 
 from roughness.assessment.reading import read_strictly
+from roughness.assessment.wet_sections import above_zero, wet_section
 from roughness.errors import InputError
-from roughness.quantities.printing import rounded, show_value
+from roughness.quantities.printing import show_value
 from roughness.quantities.strict_json import read_json
-from roughness.survey.measured_flow import FlowSection, MeasuredFlow
+from roughness.survey.measured_flow import CheckedFlow, MeasuredFlow
 
 _MOST_SECTIONS: Final = 1000
 _MOST_EVENTS: Final = 1000
-# Faster than any river that was gauged: common practice, no source.
-_FASTEST_MS: Final = 20.0
-# A natural section with reversed flow at its edges has 2 to 3: common practice, no source.
-_LARGEST_ALPHA: Final = 10.0
 _LARGEST_SLOPE: Final = 1.0
 
 
-def read_measured_flows(raw: bytes, where: str) -> tuple[MeasuredFlow, ...] | MeasuredFlow:
+def read_measured_flows(raw: bytes, where: str) -> tuple[CheckedFlow, ...] | CheckedFlow:
     """Read the JSON text of one measured flow, or of a list of them.
 
     Parameters
@@ -50,76 +46,45 @@ def flow_of(where: str, number: int) -> str:
     return f"{where}: flow {number}"
 
 
-def _flow_from(document: Any, where: str) -> MeasuredFlow:
+def _flow_from(document: Any, where: str) -> CheckedFlow:
     if not isinstance(document, dict):
         raise InputError("no JSON object", where=where, wanted='it starts with {"discharge_m3s":')
     flow = read_strictly(MeasuredFlow, document, where)
     assert isinstance(flow, MeasuredFlow)
-    check_measured_flow(flow, where)
-    return flow
+    return checked_flow(flow, where)
 
 
-def check_measured_flow(flow: MeasuredFlow, where: str) -> None:
-    """Refuse what no flow can have: one sentence with the field and what would be right.
+def checked_flow(flow: MeasuredFlow, where: str) -> CheckedFlow:
+    """Return a measured flow with its sections as they were wetted.
 
     Raises
     ------
     InputError
-        The first thing that is wrong.
+        What no flow can have: one sentence with the field and what would be right.
     """
-    _above_zero(flow.discharge_m3s, f"{where}: discharge_m3s", "the discharge in m3/s")
-    if not flow.sections:
+    above_zero(flow.discharge_m3s, f"{where}: discharge_m3s", "the discharge in m3/s")
+    if not 0 < len(flow.sections) <= _MOST_SECTIONS:
         raise InputError(
-            "there is no section", where=f"{where}: sections", wanted="one or more is due"
-        )
-    if len(flow.sections) > _MOST_SECTIONS:
-        raise InputError(
-            f"{len(flow.sections)} sections are too many",
+            f"{len(flow.sections)} sections",
             where=f"{where}: sections",
-            wanted=f"at most {_MOST_SECTIONS}",
+            wanted=f"1 to {_MOST_SECTIONS} are due",
         )
-    for number, section in enumerate(flow.sections, 1):
-        _check_section(section, flow.discharge_m3s, f"{where}: section {number}")
     _check_losses_and_errors(flow, where)
     if len(flow.sections) == 1:
         _check_slope(flow.slope, where)
     else:
         _check_places(flow, where)
-
-
-def _check_section(section: FlowSection, discharge: float, place: str) -> None:
-    area, perimeter = section.area_m2, section.wetted_perimeter_m
-    _above_zero(area, f"{place}, area_m2", "the wetted area in m2; a dry section carries no flow")
-    _above_zero(perimeter, f"{place}, wetted_perimeter_m", "the wetted perimeter in m")
-    # Of all beds with a wetted perimeter, the half circle holds the largest area.
-    if area > perimeter**2 / (2 * pi) * (1 + 1e-9):
-        raise InputError(
-            f"no bed of {show_value(perimeter)} m holds {show_value(area)} m2",
-            where=f"{place}, wetted_perimeter_m",
-            wanted=f"at least {rounded((2 * pi * area) ** 0.5, 2)} m, or a smaller area",
-        )
-    if section.top_width_m is not None:
-        _above_zero(section.top_width_m, f"{place}, top_width_m", "the width of the water in m")
-        if section.top_width_m > perimeter:
-            raise InputError(
-                f"the water is {show_value(section.top_width_m)} m wide and its bed"
-                f" {show_value(perimeter)} m long",
-                where=f"{place}, top_width_m",
-                wanted="at most the wetted perimeter",
-            )
-    if not 1 <= section.alpha <= _LARGEST_ALPHA:
-        raise InputError(
-            f"alpha {show_value(section.alpha)} is no velocity head coefficient",
-            where=f"{place}, alpha",
-            wanted=f"1 to {show_value(_LARGEST_ALPHA)}",
-        )
-    if discharge / area > _FASTEST_MS:
-        raise InputError(
-            f"{show_value(discharge)} m3/s through {show_value(area)} m2 is a velocity of"
-            f" {rounded(discharge / area, 0)} m/s",
-            where=place,
-            wanted="check that the discharge is in m3/s and the area in m2",
-        )
+    return CheckedFlow(
+        discharge_m3s=flow.discharge_m3s,
+        sections=tuple(
+            wet_section(section, flow.discharge_m3s, f"{where}: section {number}")
+            for number, section in enumerate(flow.sections, 1)
+        ),
+        slope=flow.slope,
+        expansion_loss=flow.expansion_loss,
+        contraction_loss=flow.contraction_loss,
+        errors=flow.errors,
+    )
 
 
 def _check_losses_and_errors(flow: MeasuredFlow, where: str) -> None:
@@ -158,7 +123,7 @@ def _check_slope(slope: float | None, where: str) -> None:
         raise InputError(
             "it is missing", where=place, wanted="one section needs the slope, or give two sections"
         )
-    _above_zero(slope, place, "metres of fall a metre, such as 0.002; water runs downhill")
+    above_zero(slope, place, "metres of fall a metre, such as 0.002; water runs downhill")
     if slope > _LARGEST_SLOPE:
         raise InputError(
             f"{show_value(slope)} is too steep", where=place, wanted="metres of fall a metre"
@@ -195,8 +160,3 @@ def _check_places(flow: MeasuredFlow, where: str) -> None:
 
 def _steps(distances: Sequence[float]) -> Iterator[float]:
     return (b - a for a, b in pairwise(distances))
-
-
-def _above_zero(value: float, where: str, due: str) -> None:
-    if not value > 0:
-        raise InputError(f"{show_value(value)} is not above 0", where=where, wanted=f"{due} is due")

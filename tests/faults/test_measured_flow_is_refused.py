@@ -39,6 +39,14 @@ def lacking(name: str) -> str:
     return json.dumps(FLOW | {"sections": sections})
 
 
+BANKS = [[0, 12], [2, 9], [12, 9], [14, 12]]
+
+
+def with_points(points: Any = BANKS, level: Any = 10.4, **more: Any) -> str:
+    first = {"distance_m": 0, "points": points, "water_level_m": level} | more
+    return json.dumps(FLOW | {"sections": [first, *FLOW["sections"][1:]]})
+
+
 def second(flow: str) -> str:
     return f"[{json.dumps(ONE)}, {flow}]"
 
@@ -61,7 +69,7 @@ WRONG: dict[str, tuple[str, str]] = {
     "no discharge": ('{"sections": []}', "discharge_m3s: it is missing"),
     "discharge 0": (whole(discharge_m3s=0), "discharge_m3s: 0 is not above 0"),
     "negative discharge": (whole(discharge_m3s=-3), "the discharge in m3/s is due"),
-    "no sections": (whole(sections=[]), "sections: there is no section"),
+    "no sections": (whole(sections=[]), "sections: 0 sections; 1 to 1000 are due"),
     "dry section": (of_section(2, area_m2=0), "section 2, area_m2: 0 is not above 0"),
     "no perimeter": (of_section(1, wetted_perimeter_m=0), "section 1, wetted_perimeter_m"),
     "perimeter too short": (of_section(3, wetted_perimeter_m=5), "at least 11.76 m"),
@@ -88,6 +96,15 @@ WRONG: dict[str, tuple[str, str]] = {
     "error of all": (whole(errors={"area_percent": 100}), "0 to below 100 is due"),
     "slope error with levels": (whole(errors={"slope_percent": 5}), "errors.slope_percent"),
     "level error alone": (single(errors={"water_level_m": 0.01}), "errors.water_level_m"),
+    "no area": (lacking("area_m2"), "section 2, area_m2: it is missing; area_m2 and wetted_"),
+    "one point": (with_points([[0, 12]]), "section 1: points: one point is no section"),
+    "a point twice": (with_points([[0, 12], [2, 9], [2, 9], [14, 12]]), "points 2 and 3 are the"),
+    "points from the right": (with_points(BANKS[::-1]), "from left to right looking downstream"),
+    "a point that is none": (with_points([[0, 12], [2], [14, 12]]), "sections.0.points.1"),
+    "points and area": (with_points(area_m2=14), "section 1, area_m2: it stands beside points"),
+    "points without level": (with_points(level=None), "section 1, water_level_m: it is missing"),
+    "level below the bed": (with_points(level=9), "9 m is not above the lowest point, 9 m"),
+    "level above the banks": (with_points(level=12.5), "above the lower end of the section, 12 m"),
 }  # fmt: skip
 
 
@@ -108,8 +125,8 @@ def test_one_sentence_says_what_is_wrong(
 def test_the_documents_that_are_varied_are_right_themselves(
     tmp_path: Path, capsys: pytest.CaptureFixture[str]
 ) -> None:
-    for document in (FLOW, ONE):
+    for document in (whole(), single(), with_points()):
         file = tmp_path / "flow.json"
-        file.write_text(json.dumps(document), encoding="utf-8")
+        file.write_text(document, encoding="utf-8")
         assert main(["backcalc", str(file)]) == 0
     assert capsys.readouterr().err == ""

@@ -99,6 +99,24 @@ def test_one_section_with_a_slope_is_uniform_flow(tmp_path: Path, capsys: Captur
     assert rules(found) == ["measured-sections-few"]
 
 
+def test_sections_may_be_given_by_their_points(tmp_path: Path, capsys: Capture) -> None:
+    # The same reach: rectangles 14, 11, 16 and 13 m wide on beds at these heights.
+    beds = [(14, 100.30), (11, 100.20), (16, 100.08), (13, 100.00)]
+    sections = [
+        {
+            "distance_m": one["distance_m"],
+            "water_level_m": one["water_level_m"],
+            "points": [[0, 105], [0, bed], [width, bed], [width, 105]],
+        }
+        for one, (width, bed) in zip(FOUR["sections"], beds, strict=True)
+    ]
+    found = backcalc(tmp_path, capsys, FOUR | {"sections": sections})
+    assert found["n"] == pytest.approx(0.035, rel=1e-9)
+    # V / sqrt(g A / T) is largest in the narrow section.
+    area = FOUR["sections"][1]["area_m2"]
+    assert found["froude"] == pytest.approx(30 / area / (9.80665 * area / 11) ** 0.5, rel=1e-9)
+
+
 def test_many_flows_give_n_against_stage(tmp_path: Path, capsys: Capture) -> None:
     other = FOUR | {"discharge_m3s": 20.0, "errors": ERRORS}
     file = tmp_path / "flows.json"
