@@ -9,13 +9,18 @@ stage, and one section at many stages, are one call. Sections of fewer points ar
 repeating their last one, which adds nothing.
 """
 
+import math
 from dataclasses import dataclass
-from typing import Any
+from typing import Any, Final
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 Floats = NDArray[np.float64]
+
+# Numbers worked on at once: what the processor's cache holds with all that is made from them.
+_BLOCK: Final = 1 << 14
+_LEAST: Final = float(np.finfo(np.float64).tiny)
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,6 +53,11 @@ class Lines:
     z0: Floats
     x1: Floats
     z1: Floats
+
+    def rows(self, axes: int, start: int, stop: int) -> "Lines":
+        """Return a block of the first of ``axes`` axes, where the lines have that axis."""
+        ends = (self.x0, self.z0, self.x1, self.z1)
+        return Lines(*(_rows(end, axes, start, stop) for end in ends))
 
 
 def ratio(above: ArrayLike, below: ArrayLike) -> Any:
@@ -86,8 +96,24 @@ def water_over(lines: Lines, level: ArrayLike) -> Water:
     >>> water_over(lines_between([0, 0, 4, 4], [2, 0, 0, 2]), 1.5)
     Water(area=6.0, perimeter=7.0, width=4.0)
     """
-    wet = water_over_each(lines, level)
-    return Water(_sum(wet.area), _sum(wet.perimeter), _sum(wet.width))
+    surface = np.asarray(level, dtype=np.float64)[..., None]
+    shape = np.broadcast_shapes(surface.shape, lines.x0.shape)
+    if len(shape) < 2:
+        return _summed(lines, surface)
+    step = max(1, _BLOCK * shape[0] // max(1, math.prod(shape)))
+    blocks = [
+        _summed(lines.rows(len(shape), i, i + step), _rows(surface, len(shape), i, i + step))
+        for i in range(0, max(1, shape[0]), step)
+    ]
+    if len(blocks) == 1:
+        return blocks[0]
+    columns = ([getattr(b, name) for b in blocks] for name in ("area", "perimeter", "width"))
+    return Water(*(np.concatenate(column) for column in columns))
+
+
+def _summed(lines: Lines, surface: Floats) -> Water:
+    each = _over_each(lines, surface)
+    return Water(_sum(each.area), _sum(each.perimeter), _sum(each.width))
 
 
 def water_over_each(lines: Lines, level: ArrayLike) -> Water:
@@ -95,14 +121,23 @@ def water_over_each(lines: Lines, level: ArrayLike) -> Water:
 
     As :func:`water_over`; what stands over a line that runs backwards is negative.
     """
-    surface = np.asarray(level, dtype=np.float64)[..., None]
+    return _over_each(lines, np.asarray(level, dtype=np.float64)[..., None])
+
+
+def _over_each(lines: Lines, surface: Floats) -> Water:
     d0, d1 = surface - lines.z0, surface - lines.z1
     depths = np.maximum(d0, 0) + np.maximum(d1, 0)
     reach = np.abs(d0) + np.abs(d1)
-    wet = np.divide(depths, reach, out=np.zeros_like(reach), where=reach > 0)
-    run = lines.x1 - lines.x0
-    length = np.hypot(run, lines.z1 - lines.z0)
-    return Water(run * wet * depths / 2, length * wet, run * wet)
+    # A level line at the waterline has neither depth nor reach: 0 / least is dry.
+    wet = depths / np.maximum(reach, _LEAST)
+    run, rise = lines.x1 - lines.x0, lines.z1 - lines.z0
+    width = run * wet
+    return Water(width * depths * 0.5, np.sqrt(run * run + rise * rise) * wet, width)
+
+
+def _rows(values: Floats, axes: int, start: int, stop: int) -> Floats:
+    """Return a block of the first of ``axes`` axes, where the array has that axis."""
+    return values if values.ndim < axes or values.shape[0] == 1 else values[start:stop]
 
 
 def water_below(x: ArrayLike, z: ArrayLike, level: ArrayLike) -> Water:

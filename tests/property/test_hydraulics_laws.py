@@ -111,6 +111,18 @@ def test_a_section_seen_in_a_mirror_holds_the_same_water(
     assert back.perimeter == pytest.approx(there.perimeter, abs=1e-9)
 
 
+@given(sections(), LEVELS, numbers(-3, 3))
+def test_leaning_the_bed_over_keeps_area_and_width(
+    section: tuple[Floats, Floats], level: float, lean: float
+) -> None:
+    # Shearing moves every height sideways by as much, so that banks become overhangs.
+    x, z = section
+    upright, leaning = water_below(x, z, level), water_below(x + lean * z, z, level)
+    assert leaning.area == pytest.approx(upright.area, abs=1e-9)
+    assume(abs(z - level).min() > 1e-6)
+    assert leaning.width == pytest.approx(upright.width, abs=1e-9)
+
+
 @given(sections(), numbers(0.1, 9.9), numbers(0.01, 0.2), SLOPES)
 def test_every_normal_level_carries_the_discharge(
     section: tuple[Floats, Floats], level: float, n: float, slope: float
