@@ -46,7 +46,7 @@ class EvidenceScreen(Screen[None]):
 
     CSS_PATH = "evidence.tcss"
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("enter", "look", "look"),
+        Binding("enter", "look", "look", priority=True),
         Binding("plus", "add", "attach"),
         Binding("n", "note", "caption"),
         Binding("escape", "back", "back"),

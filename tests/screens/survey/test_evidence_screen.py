@@ -75,7 +75,7 @@ async def test_a_photo_is_attached_by_its_path_with_caption_and_factors(
         assert "the willows" in keyboard.words and "1 in all" in keyboard.words
         assert item.evidence.sha256[:12] in keyboard.words
         assert all(len(line) <= size[0] for line in keyboard.text.splitlines())
-        assert "Esc back" in keyboard.text.splitlines()[-1]
+        assert "⏎ look" in keyboard.text.splitlines()[-1]
         await keyboard.press("enter")
         await settled(keyboard)
         assert keyboard.screen == "PhotoScreen" and UPPER_HALF in keyboard.text
