@@ -7,10 +7,17 @@ from roughness.commands import DONE, STANDS_STOPPED, complain
 from roughness.commands.arguments import add_json
 from roughness.commands.results import print_json, print_lines
 
+CHANNEL_TYPES = "chow-1959"
+
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Declare what the verb takes."""
-    parser.add_argument("key", nargs="?", metavar="KEY", help="print the rows of this handbook")
+    parser.add_argument(
+        "key",
+        nargs="?",
+        metavar="KEY",
+        help="print the rows of this handbook; chow-1959: n of types of channel",
+    )
     parser.add_argument(
         "--survey", type=Path, metavar="SURVEY", help="the handbooks of this survey too"
     )
@@ -28,6 +35,8 @@ def run(args: argparse.Namespace) -> int:
         from roughness.desk.folder import SurveyFolder
 
         folder = SurveyFolder(args.survey).handbooks
+    if args.key == CHANNEL_TYPES:
+        return _print_channel_types(args)
     if args.key is not None:
         handbook = load_handbook(args.key, folder)
         if args.json:
@@ -47,3 +56,15 @@ def run(args: argparse.Namespace) -> int:
     else:
         print_lines(text.summary_lines(handbooks, folder))
     return STANDS_STOPPED if unusable else DONE
+
+
+def _print_channel_types(args: argparse.Namespace) -> int:
+    from roughness.commands.channel_type_text import channel_type_lines
+    from roughness.desk.cross_checking import channel_types
+
+    table = channel_types()
+    if args.json:
+        print_json(table)
+    else:
+        print_lines(channel_type_lines(table))
+    return DONE

@@ -83,13 +83,14 @@ class ChannelTypes:
             raise UnknownNameError(
                 f"no channel type is called {printable(words)!r}",
                 where=where,
-                wanted=hint or f"groups are {_listed([row.group for row in self.rows])}",
+                wanted=hint or f"`roughness tables {self.key}` prints them all",
             )
         if len(found) > 1:
             raise InputError(
                 f"{printable(words)!r} fits {len(found)} channel types",
                 where=where,
-                wanted=f"name one of {_listed([row.key for row in found])}",
+                wanted=f"name one of {_listed([row.key for row in found])}; "
+                f"`roughness tables {self.key}` prints them",
             )
         return found[0]
 

@@ -59,7 +59,7 @@ WRONG: dict[str, tuple[Any, str, str]] = {
         "low, best, high are 0.05, 0.04, 0.06",
     ),
     "range without best": ({"n": {"low": 0.05, "high": 0.06}}, "n.best", "it is missing"),
-    "unknown channel type": ({"channel_type": "canyon of lava"}, "channel_type", "groups are"),
+    "unknown channel type": ({"channel_type": "canyon of lava"}, "channel_type", "prints them all"),
     "channel type of many": ({"channel_type": "earth"}, "channel_type", "name one of"),
     "stems without depth": ({"stems": STEMS}, "stems", "give depth_m too"),
     "stems without drag": (

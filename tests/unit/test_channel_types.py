@@ -4,6 +4,7 @@ import json
 
 import pytest
 
+from roughness.__main__ import main
 from roughness.comparison import of_channel_type, parse_channel_types
 from roughness.desk.cross_checking import channel_types
 from roughness.errors import InputError, UnknownNameError
@@ -43,7 +44,7 @@ def test_words_that_fit_several_rows_or_none_are_refused_with_names() -> None:
         table.one("light brush trees")
     with pytest.raises(UnknownNameError, match="did you mean 'plain-sluggish-weedy'"):
         table.one("plain-slugish-wedy")
-    with pytest.raises(UnknownNameError, match="groups are minor stream on a plain"):
+    with pytest.raises(UnknownNameError, match="tables chow-1959` prints them all"):
         table.one("space ship")
 
 
@@ -77,3 +78,17 @@ def test_a_key_that_comes_twice_is_refused() -> None:
     table = json.dumps(TABLE | {"rows": [ROW, ROW]}).encode()
     with pytest.raises(InputError, match="twice"):
         parse_channel_types(table, "t.json")
+
+
+def test_the_types_are_printed_with_their_keys_and_marks(
+    capsys: pytest.CaptureFixture[str],
+) -> None:
+    assert main(["tables", "chow-1959"]) == 0
+    out = capsys.readouterr().out
+    assert all(len(line) <= 80 for line in out.splitlines())
+    flat = " ".join(out.split())
+    for row in channel_types().rows:
+        assert f" {row.key}: {row.name}; " in flat
+    assert "0.035 to 0.1, no usual value; memory" in flat
+    assert main(["tables", "chow-1959", "--json"]) == 0
+    assert len(json.loads(capsys.readouterr().out)["rows"]) == len(channel_types().rows)
