@@ -11,6 +11,9 @@ from pydantic import TypeAdapter
 from roughness.__main__ import main
 from roughness.assessment.cross_checking import CrossChecked
 from roughness.desk.cross_checking import crosschecked
+from roughness.errors import RoughnessError
+from roughness.shelf.facts import shipped_facts
+from roughness.survey.cross_check import CrossCheck
 
 Capture = pytest.CaptureFixture[str]
 GRAVEL: dict[str, Any] = {
@@ -168,3 +171,19 @@ def test_the_output_is_what_its_schema_promises(capsys: Capture) -> None:
     assert set(schema["$defs"]["OtherN"]["properties"]) == set(
         checked(GRAVEL).as_document()["estimates"][0]
     )
+
+
+def test_typed_measurements_give_what_their_text_gives() -> None:
+    assert crosschecked(CrossCheck(slope=0.01, hydraulic_radius_m=0.9144)) == checked(
+        {"slope": 0.01, "hydraulic_radius_m": 0.9144}
+    )
+
+
+def test_a_size_that_the_count_does_not_tell_contradicts_nothing() -> None:
+    fine = {"pebble_tally": [{"from_mm": 0, "to_mm": 2, "count": 200}], "d50_mm": 0.5}
+    assert "size-against-count" not in rules(fine)
+
+
+def test_a_table_that_is_not_there_is_said_with_its_name() -> None:
+    with pytest.raises(RoughnessError, match=r"nothing\.json .* install roughness again"):
+        shipped_facts("nothing.json")
