@@ -13,6 +13,7 @@ from roughness.survey.sections import Section, Trapezoid
 Floats = NDArray[np.float64]
 
 FARTHEST_M: Final = 1e6
+NARROWEST_M: Final = 1e-3
 # Banks of a trapezoid go on upwards; this high there is no river.
 _TRAPEZOID_HEIGHT_M: Final = 1000.0
 _BLOCK: Final = 512
@@ -84,9 +85,11 @@ def _bed_of_trapezoid(shape: Trapezoid, place: str) -> Bed:
             where=place,
             wanted="horizontal for 1 vertical is due, 0 for a rectangle",
         )
-    if b + z == 0:
+    if max(b, z) < NARROWEST_M:
         raise InputError(
-            "neither bottom width nor side slope", where=place, wanted="one of them is above 0"
+            f"bottom width and side slope are both under {show_value(NARROWEST_M)}",
+            where=place,
+            wanted="one of them is above 0",
         )
     top = _TRAPEZOID_HEIGHT_M
     x = np.array([-z * top, 0.0, b, b + z * top])
@@ -125,7 +128,7 @@ def _refuse_twice(x: Floats, z: Floats, place: str) -> None:
 
 
 def _refuse_backwards(x: Floats, z: Floats, place: str) -> None:
-    if x[-1] > x[0]:
+    if x[-1] - x[0] >= NARROWEST_M:
         return
     if (np.diff(x) <= 0).all() and x[-1] < x[0]:
         raise InputError(

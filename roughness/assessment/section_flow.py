@@ -29,6 +29,8 @@ from roughness.survey.sections import Section
 
 Floats = NDArray[np.float64]
 
+# Less than this, in m or m3/s, is no water.
+LEAST: Final = 1e-9
 CASES: Final = ("low", "best", "high")
 
 
@@ -241,7 +243,7 @@ def _refuse_numbers(section: Section, where: str) -> None:
             met, where=where, wanted="one of discharge_m3s, water_level_m and depth_m is due"
         )
     for key in ("discharge_m3s", "depth_m"):
-        if key in known and not known[key] > 0:
+        if key in known and not known[key] >= LEAST:
             raise InputError(
                 f"it is {show_value(known[key])}", where=f"{where}: {key}", wanted="above 0 is due"
             )
@@ -270,7 +272,7 @@ def _height_of(section: Section, bed: Bed, where: str) -> float:
     else:
         assert section.water_level_m is not None
         height, place = section.water_level_m - bed.datum, f"{where}: water_level_m"
-    if height <= 0:
+    if height < LEAST:
         raise InputError(
             f"the section is dry at {show_value(section.water_level_m or 0.0)} m",
             where=place,

@@ -83,6 +83,19 @@ WRONG: dict[str, tuple[Any, tuple[str, ...]]] = {
         TRAPEZOID | {"trapezoid": {"bottom_width_m": 0, "side_slope": 0}},
         ("trapezoid", "one of them is above 0"),
     ),
+    "trapezoid of hardly any width": (
+        TRAPEZOID | {"trapezoid": {"bottom_width_m": 0, "side_slope": 1e-300}},
+        ("both under 0.001",),
+    ),
+    "section of hardly any width": (
+        with_points([0, 3], [1e-300, 0], [2e-300, 3]),
+        ("to the right of the first",),
+    ),
+    "discharge next to nothing": (
+        without("depth_m", discharge_m3s=5e-324),
+        ("discharge_m3s", "above 0"),
+    ),
+    "depth next to nothing": (GOOD | {"depth_m": 1e-300}, ("depth_m", "above 0")),
     "trapezoid with a negative width": (
         TRAPEZOID | {"trapezoid": {"bottom_width_m": -4, "side_slope": 1}},
         ("bottom width of -4 m",),
@@ -224,7 +237,8 @@ def test_absurd_but_possible_sections_are_calculated(
         {"slope": 1.0},
         {"parts": [{"n": 1e-12}]},
         {"depth_m": 1e-9},
-        {"points": [[0, 1e6], [1e-6, 0], [2e-6, 1e6]]},
+        {"depth_m": None, "discharge_m3s": 1e-9, "points": [[-1e6, 1], [0, 0], [1e6, 1]]},
+        {"points": [[0, 1e6], [1e-3, 0], [2e-3, 1e6]]},
         {"points": [[-1e6, 1], [0, 0.5], [1e6, 1]], "depth_m": 0.5},
     ):
         file.write_text(json.dumps(GOOD | change), encoding="utf-8")

@@ -5,6 +5,7 @@ from functools import partial
 import numpy as np
 import pytest
 
+from roughness.hydraulics.conveyance import conveyance
 from roughness.hydraulics.critical_depth import (
     critical_depth_of_trapezoid,
     critical_levels,
@@ -64,6 +65,28 @@ def test_over_a_level_bench_there_may_be_several_critical_depths() -> None:
         assert section_factor(water_below(X, Z, level)) == pytest.approx(at_bank * 0.9, rel=1e-12)
 
 
+def test_many_sections_with_their_own_discharges_are_solved_at_once() -> None:
+    rng = np.random.default_rng(5)
+    x = np.sort(rng.uniform(0, 60, (40, 15)), axis=-1)
+    z = rng.uniform(0, 4, (40, 15))
+    z[:, [0, -1]] = 5.0
+    heights = z - z.min(axis=-1, keepdims=True)
+
+    def carried(level: Floats) -> Floats:
+        water = water_below(x, heights, level)
+        return np.asarray(conveyance(0.04, water.area, water.perimeter))
+
+    top = heights[:, 0]
+    discharge = carried(top) * 0.05 * rng.uniform(0.01, 1.05, 40)
+    grid, jumps = levels_to_try(heights, top)
+    found = normal_levels(carried, discharge, 0.0025, grid, jumps)
+    assert (found.count >= 1).tolist() == (discharge <= carried(top) * 0.05).tolist()
+    solved = found.count > 0
+    assert 20 < solved.sum() < 40
+    again = carried(np.where(solved, found.highest, top)) * 0.05
+    assert again[solved] == pytest.approx(discharge[solved], rel=1e-11)
+
+
 def test_water_without_a_surface_has_no_critical_flow() -> None:
     assert section_factor(Water(1.0, 3.0, 0.0)) == float("inf")
     assert section_factor(Water(0.0, 0.0, 0.0)) == 0
@@ -93,6 +116,13 @@ def test_absurd_trapezoids_still_have_their_depth(q: float, b: float, z: float) 
     water = trapezoid(depth, b, z)
     carried = water.area * water.radius ** (2 / 3) * 0.001**0.5 / 0.03
     assert carried == pytest.approx(q, rel=1e-12)
+
+
+def test_a_depth_that_steps_do_not_reach_is_bracketed(monkeypatch: pytest.MonkeyPatch) -> None:
+    columns = [1e-6, 1.0, 1e6], [0.0, 5.0, 300.0], [1.0, 0.0, 3.0]
+    by_steps = normal_depth_of_trapezoid(*columns, 0.03, 0.001)
+    monkeypatch.setattr("roughness.hydraulics.normal_depth._NEWTON_STEPS", 0)
+    assert normal_depth_of_trapezoid(*columns, 0.03, 0.001) == pytest.approx(by_steps, rel=1e-12)
 
 
 def test_water_a_metre_deep_and_a_metre_fast_is_turbulent_by_a_million() -> None:

@@ -156,6 +156,24 @@ def test_a_part_that_the_water_does_not_reach_is_dry_and_said_to_be(section: Any
     assert "left flood plain and right flood plain are dry" in printed["findings"][0]["says"]
 
 
+def test_the_outermost_parts_of_a_trapezoid_go_on_up_its_banks(section: Any) -> None:
+    parts = [{"name": "bank", "to": 0, "n": 0.05}, {"name": "rest", "from": 0, "n": 0.03}]
+    printed = section(TRAPEZOID | {"parts": parts})
+    depth = printed["best"]["depth_m"]
+    assert printed["parts"][0]["best"]["area_m2"] == pytest.approx(depth**2)
+    # A part that begins higher up than any water is dry.
+    parts = [{"name": "hill", "to": -9000, "n": 0.05}, {"name": "rest", "from": -9000, "n": 0.03}]
+    assert rules(section(TRAPEZOID | {"parts": parts})) == ["part-is-dry"]
+
+
+def test_the_n_of_a_part_fills_the_stretch_between_its_segments(section: Any) -> None:
+    segments = [{"to": -1, "n": 0.05}, {"from": 12, "n": 0.05}]
+    inner = section(TRAPEZOID | {"parts": [{"n": 0.03, "segments": segments}]})
+    told = [*segments, {"from": -1, "to": 12, "n": 0.03}]
+    outer = section(TRAPEZOID | {"parts": [{"segments": told}]})
+    assert inner["best"] == outer["best"]
+
+
 def test_a_plain_left_in_one_part_is_advised_to_be_divided_off(section: Any) -> None:
     printed = section(OVERBANK | {"parts": [{"n": 0.04}]})
     assert rules(printed) == ["section-to-divide", "several-critical-depths"]

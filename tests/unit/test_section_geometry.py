@@ -65,6 +65,19 @@ def test_many_sections_and_many_stages_are_one_call() -> None:
     assert at_once.perimeter.ravel().tolist() == [water.perimeter for water in each]
 
 
+def test_more_rows_than_are_worked_on_at_once_are_the_rows_one_by_one() -> None:
+    rng = np.random.default_rng(7)
+    x = np.sort(rng.uniform(0, 50, (3000, 12)), axis=-1)
+    z, level = rng.uniform(0, 5, (3000, 12)), rng.uniform(1, 6, 3000)
+    at_once = water_below(x, z, level)
+    for i in (0, 1, 1499, 2999):
+        one = water_below(x[i], z[i], level[i])
+        assert (at_once.area[i], at_once.width[i]) == (one.area, one.width)
+        assert at_once.perimeter[i] == one.perimeter
+    many_stages = water_below(x[0], z[0], level)
+    assert many_stages.area[2999] == water_below(x[0], z[0], level[2999]).area
+
+
 def test_repeating_the_last_point_fills_up_a_row_and_adds_nothing() -> None:
     assert water_below([-4, 0, 4, 4, 4], [2, 0, 2, 2, 2], 1.0) == water_below(
         [-4, 0, 4], [2, 0, 2], 1.0
