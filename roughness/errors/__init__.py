@@ -1,13 +1,13 @@
 """What can be wrong, as a tree. A bad judgement is never here: it is a finding.
 
-    RoughnessError                 every message is one sentence for the person at the keyboard
-    ├── InputError                 what was handed in is wrong; nothing was written
-    │   ├── UnknownNameError       a name that is not known here; names the nearest one that is
-    │   └── HandbookError          a handbook file that cannot be used
-    └── RecordError                something about the files of a survey
-        ├── BrokenTrailError       a trail whose lines do not hang together; read-only
-        ├── BusyError              somebody else is writing right now
-        └── NotKeptError           the disk did not take it: the choice is not kept
+RoughnessError                 every message is one sentence for the person at the keyboard
+├── InputError                 what was handed in is wrong; nothing was written
+│   ├── UnknownNameError       a name that is not known here; names the nearest one that is
+│   └── HandbookError          a handbook file that cannot be used
+└── RecordError                something about the files of a survey
+    ├── BrokenTrailError       a trail whose lines do not hang together; read-only
+    ├── BusyError              somebody else is writing right now
+    └── NotKeptError           the disk did not take it: the choice is not kept
 """
 
 

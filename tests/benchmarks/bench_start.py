@@ -37,9 +37,7 @@ ESTIMATE = {
 def seconds(words: list[str], environment: dict[str, str]) -> float:
     """Return the time of one whole process."""
     started = time.perf_counter()
-    subprocess.run(
-        [sys.executable, *words], env=environment, check=True, stdout=subprocess.DEVNULL
-    )
+    subprocess.run([sys.executable, *words], env=environment, check=True, stdout=subprocess.DEVNULL)
     return time.perf_counter() - started
 
 

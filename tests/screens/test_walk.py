@@ -6,6 +6,8 @@ import pytest
 from textual import events
 from textual.widgets import Input
 
+from roughness.screens.walk_summary import summary_lines
+
 BOTH_SIZES = pytest.mark.parametrize("size", [(80, 24), (120, 40)])
 
 

@@ -43,6 +43,7 @@ def pen(tmp_path: Path) -> Recorder:
     pen.add_condition(FlowCondition(condition=FLOOD, tolerance_cm=30))
     for reach in ("Weir", "Mill"):
         pen.add_part(reach, Part(part=CHANNEL, setting="channel"))
+        pen.note_visit(reach, Visit(visit="spring"))
     for factor, choice in WHOLE:
         choose(pen, factor, choice)
     return pen

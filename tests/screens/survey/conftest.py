@@ -15,7 +15,7 @@ from roughness.desk.recording import Recorder
 from roughness.screens.app import RoughnessApp
 from roughness.screens.survey import SurveyScreen
 from roughness.survey.choices import CHOICES, Choice
-from roughness.survey.stream import FlowCondition, Part, Reach
+from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.survey.words import USUAL_PARTS, Factor
 
 FLOOD = "design flood"
@@ -133,6 +133,7 @@ def pen(tmp_path: Path) -> Recorder:
     pen = Recorder(survey, "Runa")
     pen.add_condition(FlowCondition(condition=FLOOD, growth="leaf-on"))
     for name in ("Weir pool", "Osier bend"):
+        pen.note_visit(name, Visit(visit="spring"))
         pen.add_part(name, Part(part="main channel", setting=USUAL_PARTS["main channel"]))
     judge(pen, "Osier bend", {"base": "firm-soil"})
     judge(pen, "Weir pool", GRADES)

@@ -7,6 +7,8 @@ from pathlib import Path
 
 import pytest
 from PIL import Image
+from rich.color_triplet import ColorTriplet
+from rich.segment import Segment
 from textual.app import App
 from textual.pilot import Pilot
 
@@ -95,9 +97,14 @@ async def test_the_colours_are_those_of_the_picture(pen: Recorder, tmp_path: Pat
     async with looking(pen) as (app, _):
         strips = app.screen._compositor.render_strips(app.screen.size)
         blocks = [s for strip in strips for s in strip if UPPER_HALF in s.text]
-        first, last = (blocks[at].style.color.triplet for at in (0, -1))
+        first, last = (_foreground(blocks[at]) for at in (0, -1))
         assert first.red > 150 and first.blue < 90
         assert last.blue > 150 and last.red < 90
+
+
+def _foreground(block: Segment) -> ColorTriplet:
+    assert block.style and block.style.color and block.style.color.triplet
+    return block.style.color.triplet
 
 
 async def test_caption_time_position_hash_and_factors_are_told(
