@@ -1,6 +1,7 @@
-"""Hydraulics that the additive method leans on: composite n, and depth against n.
+"""Hydraulics: water in sections, uniform flow, composite n, vegetation, n from measured flow.
 
-They take floats and arrays alike, with the segments of a part on the last axis.
+One subject a file, pure numpy, floats and arrays alike; segments and parts on the last axis.
+What the additive method leans on is named here.
 """
 
 from roughness.hydraulics.composite import horton_einstein, pavlovskii, perimeter_mean
