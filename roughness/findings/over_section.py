@@ -69,6 +69,11 @@ def _metres(length: float) -> str:
     return f"{rounded(length, 2)} m"
 
 
+def _listed(lengths: Iterable[float]) -> list[str]:
+    """Return lengths as they are printed; those that a reader cannot tell apart once."""
+    return list(dict.fromkeys(_metres(length) for length in lengths))
+
+
 def _named(part: PartFacts) -> str:
     return printable(part.name)
 
@@ -101,10 +106,10 @@ def _to_divide(facts: SectionFacts) -> Iterable[str]:
 
 
 def _several_normal(facts: SectionFacts) -> Iterable[str]:
-    if len(facts.normal_levels) > 1:
-        levels = enumerate_words([_metres(level) for level in facts.normal_levels])
+    levels = _listed(facts.normal_levels)
+    if len(levels) > 1:
         yield (
-            f"Water levels of {levels} all carry this discharge, because the wetted perimeter of"
+            f"Water levels of {enumerate_words(levels)} all carry this discharge, because the wetted perimeter of"
             " an undivided part grows faster than its area; the highest one is given: divide the"
             " section where its depth changes abruptly."
         )
@@ -136,9 +141,9 @@ def _not_rough(facts: SectionFacts) -> Iterable[str]:
 
 
 def _several_critical(facts: SectionFacts) -> Iterable[str]:
-    if len(facts.critical_depths) > 1:
-        depths = enumerate_words([_metres(depth) for depth in facts.critical_depths])
-        yield f"Depths of {depths} are all critical; the one of least specific energy is given."
+    depths = _listed(facts.critical_depths)
+    if len(depths) > 1:
+        yield f"Depths of {enumerate_words(depths)} are all critical; the one of least specific energy is given."
 
 
 def _no_critical(facts: SectionFacts) -> Iterable[str]:
