@@ -123,7 +123,7 @@ def _open(words: Sequence[str]) -> int | Screens:
     parser.add_argument("survey", nargs="?", type=Path)
     parser.add_argument("--by")
     args = parser.parse_args(words)
-    if not (sys.stdin.isatty() and sys.stdout.isatty()):
+    if not at_a_terminal():
         complain("the screens need a terminal; `roughness list SURVEY` prints the table")
         return WRONG_INPUT
     return Screens(args.survey, by=args.by)
@@ -137,6 +137,12 @@ def _refuse_mistyped_verb(words: Sequence[str]) -> None:
 
     if hint := nearest(first, VERBS):
         raise UnknownNameError(f"{first} is neither a verb nor a survey", wanted=hint)
+
+
+def at_a_terminal() -> bool:
+    """Return whether the screens can be seen; they are drawn on standard error."""
+    streams = sys.stdin, sys.stdout, sys.stderr
+    return all(stream is not None and stream.isatty() for stream in streams)
 
 
 def help_page() -> str:

@@ -37,6 +37,47 @@ def add_units(parser: argparse.ArgumentParser) -> None:
     )
 
 
+def add_handbooks(parser: argparse.ArgumentParser) -> None:
+    """Take where further handbooks lie: a survey, or an agency's own file or folder."""
+    places = parser.add_mutually_exclusive_group()
+    places.add_argument(
+        "--survey", type=Path, metavar="SURVEY", help="use the handbooks of this survey too"
+    )
+    places.add_argument(
+        "--handbook",
+        type=Path,
+        metavar="FILE",
+        help="use an agency's own handbook too: a .toml file, or a folder of them",
+    )
+
+
+def handbooks_of(args: argparse.Namespace) -> Path | None:
+    """Return the folder with further handbooks that was named, if any.
+
+    Raises
+    ------
+    InputError
+        Where what was named is not there.
+    """
+    if args.survey is not None:
+        from roughness.desk.folder import SurveyFolder
+
+        return SurveyFolder(args.survey).handbooks
+    named: Path | None = args.handbook
+    if named is None or named.is_dir():
+        return named
+    if not named.is_file():
+        from roughness.errors import InputError
+        from roughness.quantities.foreign_text import printable
+
+        raise InputError(
+            "there is no such file or folder",
+            where=printable(str(named)),
+            wanted="an agency's own handbook, a .toml file; a key stands in the estimate itself",
+        )
+    return named.parent
+
+
 def number(text: str) -> float:
     """Read a number from the command line; NaN, infinity and a decimal comma are refused."""
     try:

@@ -4,7 +4,7 @@ import argparse
 import sys
 from pathlib import Path
 
-from roughness.commands import DONE, Screens
+from roughness.commands import DONE, Screens, at_a_terminal
 from roughness.commands.results import print_lines
 
 USUAL_FOLDER = Path("roughness-demo")
@@ -27,7 +27,8 @@ def run(args: argparse.Namespace) -> int | Screens:
     from roughness.quantities.foreign_text import printable
 
     folder: Path = args.folder or USUAL_FOLDER
-    if (folder / "survey.jsonl").is_file():
+    # Only the usual place is opened again; a folder that was named must be empty.
+    if args.folder is None and (folder / "survey.jsonl").is_file():
         said = f"{printable(str(folder))} holds a survey already; it is used as it is"
     else:
         from roughness.desk.making import copy_demo
@@ -35,7 +36,7 @@ def run(args: argparse.Namespace) -> int | Screens:
         copy_demo(folder)
         said = f"copied to {printable(str(folder))}"
     print(said, file=sys.stderr)
-    if sys.stdin is not None and sys.stdin.isatty() and sys.stdout.isatty():
+    if at_a_terminal():
         return Screens(folder, demo=True)
     _print_table(folder)
     return DONE

@@ -1,10 +1,9 @@
 """n with its range, spread, findings and reasoning for one part of a reach, as JSON."""
 
 import argparse
-from pathlib import Path
 
 from roughness.commands import DONE, STANDS_STOPPED
-from roughness.commands.arguments import add_file
+from roughness.commands.arguments import add_file, add_handbooks, handbooks_of
 from roughness.commands.reading import read_given
 from roughness.commands.results import print_json
 
@@ -13,9 +12,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Declare what the verb takes."""
     add_file(parser)
     parser.add_argument("--json", action="store_true", help="as always: the result is JSON")
-    parser.add_argument(
-        "--survey", type=Path, metavar="SURVEY", help="use the handbooks of this survey too"
-    )
+    add_handbooks(parser)
 
 
 def run(args: argparse.Namespace) -> int:
@@ -25,11 +22,6 @@ def run(args: argparse.Namespace) -> int:
     raw, where = read_given(args.file, LARGEST)
     from roughness.desk.estimating import estimate
 
-    handbooks = None
-    if args.survey is not None:
-        from roughness.desk.folder import SurveyFolder
-
-        handbooks = SurveyFolder(args.survey).handbooks
-    found = estimate(raw, handbooks=handbooks, where=where)
+    found = estimate(raw, handbooks=handbooks_of(args), where=where)
     print_json(found.as_document())
     return STANDS_STOPPED if found.stands_stopped else DONE

@@ -57,14 +57,15 @@ def run(args: argparse.Namespace) -> int:
 
 def _author(by: str | None, *, may_ask: bool) -> str:
     """Return who makes the survey; ask once where there is somebody to ask."""
-    from roughness.desk.identity import known_person, remember_person, who
+    from roughness.desk.identity import NOBODY, known_person, remember_person, who
 
     if by is None and may_ask and known_person() is None and _is_terminal():
         print("Your name, as it shall stand in the record: ", end="", file=sys.stderr, flush=True)
         by = sys.stdin.readline().strip()
         if by:
             remember_person(by)
-    return who(by)
+    # A new survey holds no judgement yet: whose it is may stay open.
+    return who(by) if by is not None or known_person() else NOBODY
 
 
 def _is_terminal() -> bool:

@@ -1,10 +1,9 @@
 """Handbooks and their rows."""
 
 import argparse
-from pathlib import Path
 
 from roughness.commands import DONE, STANDS_STOPPED, complain
-from roughness.commands.arguments import add_json
+from roughness.commands.arguments import add_handbooks, add_json, handbooks_of
 from roughness.commands.results import print_json, print_lines
 
 CHANNEL_TYPES = "chow-1959"
@@ -18,9 +17,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
         metavar="KEY",
         help="print the rows of this handbook; chow-1959: n of types of channel",
     )
-    parser.add_argument(
-        "--survey", type=Path, metavar="SURVEY", help="the handbooks of this survey too"
-    )
+    add_handbooks(parser)
     add_json(parser)
 
 
@@ -30,11 +27,7 @@ def run(args: argparse.Namespace) -> int:
     from roughness.errors import HandbookError
     from roughness.shelf.handbooks import handbook_keys, load_handbook
 
-    folder = None
-    if args.survey is not None:
-        from roughness.desk.folder import SurveyFolder
-
-        folder = SurveyFolder(args.survey).handbooks
+    folder = handbooks_of(args)
     if args.key == CHANNEL_TYPES:
         return _print_channel_types(args)
     if args.key is not None:

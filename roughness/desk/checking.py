@@ -11,7 +11,6 @@ from roughness.desk.rows import Row, rows
 from roughness.desk.signatures import WRONG, SignatureFound, signatures
 from roughness.errors import HandbookError, RoughnessError
 from roughness.handbook.parsing import hash_of
-from roughness.quantities.printing import enumerate_words
 from roughness.shelf.editions import shipped_editions
 from roughness.shelf.folders import contents
 from roughness.shelf.handbooks import unusable_handbooks
@@ -66,7 +65,9 @@ def faults_of_survey(survey: SurveyFolder) -> tuple[Fault, ...]:
     trail = survey.trail()
     if not trail.lines and not trail.broken:
         return (Fault(trail.file, 0, "it holds no whole line"),)
-    return tuple(_of_trail(trail))
+    # Two ends of a reach's trail are a finding of that reach; the survey's own has no row.
+    ends = (Fault(trail.file, 0, "two people wrote apart: it is to be merged"),)
+    return (*_of_trail(trail), *(ends if trail.to_be_merged else ()))
 
 
 def _trails(survey: SurveyFolder) -> Iterator[tuple[NotedReach | None, Trail, str]]:
@@ -83,14 +84,6 @@ def _of_trail(trail: Trail) -> Iterator[Fault]:
     yield from faults_of_order(trail)
     if trail.newer:
         yield trail.newer
-    if trail.to_be_merged:
-        ends = enumerate_words([str(trail.by_hash[head].number) for head in _by_line(trail)])
-        what = f"to be merged: it has {len(trail.heads)} ends (lines {ends})"
-        yield Fault(trail.file, 0, what)
-
-
-def _by_line(trail: Trail) -> list[str]:
-    return sorted(trail.heads, key=lambda head: trail.by_hash[head].number)
 
 
 def _tied(

@@ -16,6 +16,8 @@ from roughness.errors import InputError
 from roughness.quantities.foreign_text import checked_name
 
 VARIABLE = "ROUGHNESS_BY"
+NOBODY = "nobody named"
+"""Stands for the author of a survey that was made where nobody was known."""
 KEY_VARIABLE = "ROUGHNESS_SIGNING_KEY"
 ALLOWED_VARIABLE = "ROUGHNESS_ALLOWED_SIGNERS"
 _MOST_RECENT = 12

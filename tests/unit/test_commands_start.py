@@ -56,6 +56,7 @@ def test_in_a_terminal_a_survey_and_the_demo_ask_for_the_screens(
     with name.open(encoding="utf-8") as stdin, name.open("w", encoding="utf-8") as stdout:
         monkeypatch.setattr(sys, "stdin", stdin)
         monkeypatch.setattr(sys, "stdout", stdout)
+        monkeypatch.setattr(sys, "stderr", stdout)
         opened = commands.run([str(tmp_path), "--by", "Ann Reeve"])
         demo = commands.run(["demo", str(tmp_path / "demo")])
         monkeypatch.undo()

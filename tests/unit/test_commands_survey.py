@@ -11,6 +11,7 @@ from typing import Any
 import pytest
 
 from roughness.__main__ import main
+from roughness.desk.folder import SurveyFolder
 
 # By the handbook's tables: 0.025-0.032 + 0.001-0.005 + 0 + 0-0.004 + 0.010-0.025, times 1.
 CHANNEL: dict[str, Any] = {
@@ -91,14 +92,12 @@ def test_new_takes_geojson_from_standard_input(
     assert "slope 0.001" in capsys.readouterr().out
 
 
-def test_new_asks_nothing_without_a_terminal_and_names_the_way_out(
-    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
+def test_new_asks_nothing_without_a_terminal_and_leaves_the_author_open(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
     monkeypatch.delenv("ROUGHNESS_BY")
-    assert main(["new", str(tmp_path / "s")]) == 2
-    err = capsys.readouterr().err
-    assert "--by" in err and "ROUGHNESS_BY" in err
-    assert not (tmp_path / "s").exists()
+    assert main(["new", str(tmp_path / "s")]) == 0
+    assert {line.by for line in SurveyFolder(tmp_path / "s").trail().lines} == {"nobody named"}
 
 
 def test_new_leaves_a_full_folder_as_it_is(
