@@ -109,8 +109,8 @@ def _several_normal(facts: SectionFacts) -> Iterable[str]:
     levels = _listed(facts.normal_levels)
     if len(levels) > 1:
         yield (
-            f"Water levels of {enumerate_words(levels)} all carry this discharge, because the wetted perimeter of"
-            " an undivided part grows faster than its area; the highest one is given: divide the"
+            f"Water levels of {enumerate_words(levels)} all carry this discharge, because the"
+            " wetted perimeter of an undivided part grows faster than its area; the highest one is given: divide the"
             " section where its depth changes abruptly."
         )
 
@@ -143,7 +143,10 @@ def _not_rough(facts: SectionFacts) -> Iterable[str]:
 def _several_critical(facts: SectionFacts) -> Iterable[str]:
     depths = _listed(facts.critical_depths)
     if len(depths) > 1:
-        yield f"Depths of {enumerate_words(depths)} are all critical; the one of least specific energy is given."
+        yield (
+            f"Depths of {enumerate_words(depths)} are all critical; the one of least specific"
+            " energy is given."
+        )
 
 
 def _no_critical(facts: SectionFacts) -> Iterable[str]:
