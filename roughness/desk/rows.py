@@ -11,7 +11,8 @@ from roughness.desk.places import Place, Question, place_in
 from roughness.desk.verdicts import status_in
 from roughness.errors import RoughnessError
 from roughness.findings import Estimated, Finding, find_over_survey
-from roughness.quantities.foreign_text import same_name_key
+from roughness.quantities.foreign_text import printable, same_name_key
+from roughness.quantities.printing import enumerate_words
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.survey.words import FACTORS, MULTIPLIER, Factor
 from roughness.trail.conflicts import Conflict
@@ -207,11 +208,24 @@ def _row(survey: SurveyFolder, bare: Row, state: ReachState, part: str, conditio
         ),
         review=state.review(part, condition),
         supported=_supported(state, place),
-        findings=estimate.findings if estimate else (),
+        findings=(*_of_edition(place), *(estimate.findings if estimate else ())),
         visit=visit,
         estimated_by=said.by if said else None,
         estimated_at=said.at if said else None,
     )
+
+
+def _of_edition(place: Place) -> Iterator[Finding]:
+    """Say that n is computed from another edition of the table than the choices were made from."""
+    answered = [(q[1], standing) for q in place.questions if (standing := place.at(*q))]
+    others = {f for f, chosen in answered if chosen.handbook_sha256 != place.handbook.sha256}
+    if others:
+        named = enumerate_words([factor for factor in FACTORS if factor in others])
+        says = (
+            f"Chosen from another edition of {printable(place.handbook.key)} than the one that is"
+            f" here now: {named}; bring that edition back, or look at each choice again."
+        )
+        yield Finding("stop", "other-edition", None, says)
 
 
 def _supported(state: ReachState, place: Place) -> frozenset[Factor]:

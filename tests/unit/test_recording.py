@@ -13,6 +13,7 @@ from roughness.desk.places import place_of
 from roughness.desk.recording import Recorder
 from roughness.desk.rows import rows
 from roughness.errors import InputError, RecordError
+from roughness.shelf.places import tables_folder
 from roughness.survey.choices import BaseChoice
 from roughness.survey.stream import FlowCondition, Part, Reach, Visit
 from roughness.trail.data import Gate, SegmentShare
@@ -292,3 +293,17 @@ def test_a_survey_that_a_newer_version_wrote_is_read_only_in_its_reaches_too(pen
     with pytest.raises(RecordError, match=r"format 2.*nothing was written"):
         pen.record("Weir", raw(), "file")
     assert tree(pen.survey.folder) == before
+
+
+def test_an_agencys_table_that_changed_after_its_use_stops_what_was_chosen_from_it(
+    pen: Recorder,
+) -> None:
+    text = (tables_folder() / "usgs-wsp-2339.toml").read_text(encoding="utf-8")
+    own = pen.survey.handbooks / "ours.toml"
+    own.write_text(text.replace('"usgs-wsp-2339"', '"ours"'), encoding="utf-8")
+    pen.record("Weir", raw(handbook="ours"), "file")
+    assert not rows(pen.survey)[0].stands_stopped
+    own.write_text(own.read_text(encoding="utf-8").replace("low = 0.028", "low = 0.029"))
+    row = rows(SurveyFolder(pen.survey.folder))[0]
+    assert "other-edition" in [finding.rule for finding in row.findings]
+    assert row.stands_stopped
