@@ -110,8 +110,8 @@ def _several_normal(facts: SectionFacts) -> Iterable[str]:
     if len(levels) > 1:
         yield (
             f"Water levels of {enumerate_words(levels)} all carry this discharge, because the"
-            " wetted perimeter of an undivided part grows faster than its area; the highest one is given: divide the"
-            " section where its depth changes abruptly."
+            " wetted perimeter of an undivided part grows faster than its area; the highest one is"
+            " given: divide the section where its depth changes abruptly."
         )
 
 
