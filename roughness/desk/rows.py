@@ -151,7 +151,14 @@ def _trail_findings(survey: SurveyFolder, reach: str, state: ReachState) -> Iter
     for fault in trail.broken[:1]:
         yield Finding("stop", "trail-broken", None, f"The trail is broken ({fault}): read-only.")
     if trail.to_be_merged:
-        yield Finding("stop", "to-be-merged", None, "Two people wrote apart: merge the two ends.")
+        ends = enumerate_words(
+            [str(n) for n in sorted(trail.by_hash[h].number for h in trail.heads)]
+        )
+        says = (
+            f"Written apart: {trail.file} has {len(trail.heads)} ends (lines {ends});"
+            " `roughness merge` unites them."
+        )
+        yield Finding("stop", "to-be-merged", None, says)
     if trail.newer or state.unknown:
         says = "A newer version of the tool wrote lines that this one keeps but does not know."
         yield Finding("tell", "newer-lines", None, says)

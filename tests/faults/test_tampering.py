@@ -196,11 +196,10 @@ def test_a_line_of_ones_own_put_in_anywhere_is_found_and_named(survey: Path) -> 
         for data in ({"note": "it was ever so"}, {"slope": 0.5}):
             own = encoded((prev,), "2026-01-01T00:00:00Z", "Rea", "describe", data)
             path.write_bytes(b"".join([*lines[:at], own + b"\n", *lines[at:]]))
-            faults = found(survey)
-            assert any(
-                fault.file.endswith(path.name) and f"ends (lines {at + 1} and " in fault.what
-                for fault in faults
-            ), at + 1
+            # A line beside another one is what two people leave who wrote apart: a finding.
+            said = [f.says for row in check(SurveyFolder(survey)).rows for f in row.findings]
+            told = f"{path.name} has 2 ends (lines {at + 1} and "
+            assert any(told in says for says in said), at + 1
 
 
 def test_a_line_put_in_with_the_rest_of_the_chain_made_to_fit_is_found(survey: Path) -> None:
