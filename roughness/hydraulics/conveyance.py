@@ -55,7 +55,7 @@ def velocity_head_coefficient(conveyances: ArrayLike, area: ArrayLike) -> Any:
 
     alpha = sum(K^3/A^2) / (K^3/A^2), from sum(V^3 A)/(V^3 A) with V = K sqrt(S)/A (derived).
     Within a part the velocity is taken as one. 1.03 to 1.36 in straight prismatic channels,
-    above 2 in very irregular sections (a lecture on velocity coefficients, seen).
+    above 2 in very irregular sections (a public teaching text on velocity coefficients, seen).
 
     Parameters
     ----------
