@@ -84,9 +84,10 @@ def _never(case: Case, by: str, same_person_may: bool) -> Iterator[Refusal]:
 
 def _unless_overruled(case: Case) -> Iterator[Refusal]:
     for stop in case.stops:
-        yield Refusal(f"a finding stops {case.place}: {stop}", True)
+        yield Refusal(f"a finding stops {case.place}: {stop.rstrip('.')}", True)
     for question in case.open_questions:
-        yield Refusal(f"a question about {case.place} is open: {printable(question)}", True)
+        asked = printable(question).rstrip(".")
+        yield Refusal(f"a question about {case.place} is open: {asked}", True)
 
 
 def decide(

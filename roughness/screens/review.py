@@ -11,7 +11,7 @@ from textual.screen import Screen
 from textual.widgets import Input, OptionList, Static
 from textual.widgets.option_list import Option
 
-from roughness.custody.status import CHANGED
+from roughness.custody.status import CHANGED, INCOMPLETE, UNVISITED
 from roughness.desk.recording import Recorder
 from roughness.desk.rows import Row
 from roughness.errors import RoughnessError
@@ -141,8 +141,10 @@ class ReviewScreen(Screen[None]):
         name = printable(state.described.stream or state.name)
         title = Text.assemble((f"Review › {name}", "bold"), "   weakest first", no_wrap=True)
         self.query_one("#review-title", Static).update(title)
-        counts = self.places.counts().items()
-        told = ", ".join(f"{count} {_IN_SHORT.get(word, word)}" for word, count in counts)
+        counts = self.places.counts()
+        counts["to do"] = counts.pop(INCOMPLETE, 0) + counts.pop(UNVISITED, 0)
+        said = [f"{count} {_IN_SHORT.get(word, word)}" for word, count in counts.items() if count]
+        told = ", ".join(said)
         line = Text(told or "Nothing to review yet.", no_wrap=True, overflow="ellipsis")
         self.query_one("#review-counts", Static).update(line)
         self.query_one("#review-heading", Static).update(columns.heading)
