@@ -1,5 +1,6 @@
 """Accepting: what is about to be accepted, said in full before it is done."""
 
+import asyncio
 from collections.abc import Mapping, Sequence
 from typing import Any, ClassVar
 
@@ -11,6 +12,7 @@ from textual.screen import ModalScreen
 from textual.widgets import Static
 
 from roughness.custody import Refusal
+from roughness.desk.identity import signing_key
 from roughness.desk.recording import Recorder
 from roughness.desk.reviewing import Reviewer
 from roughness.desk.rows import Row
@@ -38,7 +40,13 @@ def what_is_accepted(row: Row, unanswered: int) -> str:
             "1 finding that asks has" if unanswered == 1 else f"{unanswered} findings that ask have"
         )
         told += f" {some} no answer."
-    return told
+    return told + how_it_is_signed()
+
+
+def how_it_is_signed() -> str:
+    """Say that an acceptance will carry a signature, where this person has a key for it."""
+    key = signing_key()
+    return f" It will be signed with {printable(str(key))}." if key else ""
 
 
 def named(row: Row) -> str:
@@ -54,7 +62,7 @@ def overruling_form(
     """Ask why it is accepted although something speaks against it."""
 
     def take(typed: Mapping[str, str]) -> bool:
-        reviewer.accept(row, overruling=typed["reason"])
+        reviewer.accept(row, overruling=typed["reason"], key=signing_key())
         return True
 
     against = "\n".join(f"! {capital(printable(refusal.says))}." for refusal in refusals)
@@ -89,7 +97,8 @@ class AcceptAll(ModalScreen[bool]):
         count = len(self._rows)
         told = "1 value has" if count == 1 else f"{count} values have"
         with Vertical(classes="dialog"):
-            says = f"{told} no open finding that stops or asks and no open question. Accept?"
+            says = f"{told} no open finding that stops or asks and no open question."
+            says += f"{how_it_is_signed()} Accept?"
             yield Static(Text(says), classes="dialog--title")
             with VerticalScroll(can_focus=False):
                 yield Static(Text("\n").join(_listed(row) for row in self._rows))
@@ -127,7 +136,7 @@ async def accept_all_clean(app: App[Any], pen: Recorder, places: ReviewPlaces) -
             return "Nothing can be accepted in one step: something is open everywhere, or is yours."
         if not await app.push_screen_wait(AcceptAll(clean)):
             return "Nothing was accepted."
-        lines = reviewer.accept_all(clean)
+        lines = await asyncio.to_thread(reviewer.accept_all, clean, key=signing_key())
     except RoughnessError as error:
         return f"! {error}"
     finally:

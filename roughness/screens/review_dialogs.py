@@ -1,5 +1,6 @@
 """What the page of a review asks in dialogs: questions, answers, verdicts, taking back."""
 
+import asyncio
 from collections.abc import Awaitable, Callable, Mapping
 from typing import TYPE_CHECKING, Any
 
@@ -7,6 +8,7 @@ from textual.screen import Screen
 
 from roughness.custody.status import CHANGED, RETURNED
 from roughness.desk.history import accepted_in_words, since_acceptance
+from roughness.desk.identity import signing_key
 from roughness.desk.reviewing import Reviewer
 from roughness.desk.rows import Row
 from roughness.errors import InputError, RoughnessError
@@ -160,7 +162,7 @@ class ReviewDialogs:
         else:
             done = await self._ask(Confirm("Accept this value?", says))
             if done:
-                self._reviewer.accept(row)
+                await asyncio.to_thread(self._reviewer.accept, row, key=signing_key())
         return f"Accepted: {named(row)}. → goes on to the next." if done else None
 
     def return_(self) -> None:

@@ -1,8 +1,12 @@
 """A reviewer's verdicts at the keyboard: accepted, over a stop, returned, taken back."""
 
 import re
+import shutil
+import subprocess
+from pathlib import Path
 from typing import Any
 
+import pytest
 from textual.widgets import OptionList
 
 from roughness.desk.folder import SurveyFolder
@@ -198,3 +202,42 @@ async def test_what_somebody_else_writes_meanwhile_is_seen_before_it_is_accepted
         assert "was changed since it was read" in keyboard.words
         assert "n4 vegetation   0.01" in keyboard.text
     assert row_of(pen.survey).status == "estimated"
+
+
+@pytest.mark.skipif(shutil.which("ssh-keygen") is None, reason="ssh-keygen is not installed")
+async def test_who_has_a_key_signs_what_is_accepted_and_is_told_so_first(
+    open_app: Any, survey: SurveyFolder, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    key = tmp_path / "key"
+    words = ["ssh-keygen", "-q", "-t", "ed25519", "-N", "", "-C", "", "-f", str(key)]
+    subprocess.run(words, check=True)
+    monkeypatch.setenv("ROUGHNESS_SIGNING_KEY", str(key))
+    async with open_app(survey.folder, "Rea") as keyboard:
+        await opened_page(keyboard)
+        await keyboard.press("a")
+        assert "It will be signed with" in keyboard.words
+        await keyboard.press("enter")
+        await said(keyboard, "Accepted:")
+    acceptance = row_of(survey).review.acceptance
+    assert acceptance is not None and acceptance.accept.signature is not None
+
+
+async def test_a_key_that_does_not_sign_leaves_the_value_unaccepted(
+    open_app: Any, survey: SurveyFolder, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.setenv("ROUGHNESS_SIGNING_KEY", str(tmp_path / "not-there"))
+    async with open_app(survey.folder, "Rea") as keyboard:
+        await opened_page(keyboard)
+        await keyboard.press("a", "enter")
+        await keyboard.until("ReviewPage")
+        await said(keyboard, "not-there")
+    assert row_of(survey).review.acceptance is None
+
+
+async def said(keyboard: Any, words: str) -> None:
+    """Wait until the screen says something that is made aside."""
+    for _ in range(400):
+        if words in keyboard.words:
+            return
+        await keyboard.pilot.pause(0.01)
+    raise AssertionError(keyboard.text)
