@@ -5,7 +5,6 @@ never changes it. A consensus does, with its reason.
 """
 
 import json
-from dataclasses import asdict
 from typing import Any, Final
 
 from roughness.assessment.assessing import assess
@@ -165,16 +164,8 @@ def _checked(pen: Recorder, place: Place, judgement: Judgement, where: str) -> d
         "part": place.part.part,
         "condition": place.condition.condition,
         "handbook_sha256": handbook.sha256,
-        "estimate": _without_unsaid(asdict(judgement)),
+        "estimate": said(judgement),
     }
-
-
-def _without_unsaid(value: Any) -> Any:
-    if isinstance(value, dict):
-        return {k: _without_unsaid(v) for k, v in value.items() if v is not None}
-    if isinstance(value, list | tuple):
-        return [_without_unsaid(one) for one in value]
-    return value
 
 
 def _document(survey: SurveyFolder, raw: bytes, where: str) -> dict[str, Any]:

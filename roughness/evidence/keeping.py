@@ -18,6 +18,7 @@ from roughness.evidence.naming import (
     stored_name,
 )
 from roughness.evidence.sources import LARGEST_BYTES, Source, opened_source
+from roughness.trail.writing import sync_folder
 
 _AT_ONCE: Final = 1 << 20
 
@@ -145,7 +146,7 @@ def _put(aside: Path, target: Path, sha256: str, size: int) -> None:
             " move it out of the folder and attach again"
         )
     aside.replace(target)
-    _sync_folder(target.parent)
+    sync_folder(target.parent)
 
 
 def _not_kept(name: str, error: OSError) -> NotKeptError:
@@ -153,13 +154,3 @@ def _not_kept(name: str, error: OSError) -> NotKeptError:
         f"not kept: {name_as_it_came(name)} could not be copied ({error.strerror or error});"
         " nothing was changed"
     )
-
-
-def _sync_folder(folder: Path) -> None:
-    if os.name == "nt":  # folders cannot be opened there
-        return
-    handle = os.open(folder, os.O_RDONLY)
-    try:
-        os.fsync(handle)
-    finally:
-        os.close(handle)

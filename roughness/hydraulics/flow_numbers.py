@@ -11,8 +11,6 @@ VISCOSITY: Final = 1.1386e-6
 """Kinematic viscosity of water at 15 degrees C, m2/s (from memory)."""
 ROUGH_LIMIT: Final = 1.9e-13
 """n^6 sqrt(R S), R in ft, from which on flow is fully rough: Henderson 1966 (from memory)."""
-NIKURADSE_ROUGH: Final = 70.0
-"""Roughness Reynolds number from which on walls are fully rough: Nikuradse (from memory)."""
 
 
 def _array(values: ArrayLike) -> NDArray[np.float64]:

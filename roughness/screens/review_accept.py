@@ -19,10 +19,10 @@ from roughness.desk.rows import Row
 from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_n, show_range
+from roughness.reasoning.factor_sentence import capital
 from roughness.screens.form import Field, Form
 from roughness.screens.review_places import ReviewPlaces
 from roughness.screens.survey_lines import SurveyLine
-from roughness.screens.walk_stack import capital
 
 _TALL = 34
 

@@ -16,12 +16,12 @@ from roughness.assessment.estimate import Estimate, FactorEstimate
 from roughness.desk.agreement import Agreement, Beside
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import rounded, show_n, show_range, show_value
+from roughness.reasoning.factor_sentence import capital
 from roughness.screens.bars import axis, bar
 from roughness.screens.key_line import KeyLine
 from roughness.screens.reach_list import fitted
 from roughness.screens.review_ledger import named
 from roughness.screens.review_words import day
-from roughness.screens.walk_stack import capital
 from roughness.screens.walk_table import figure
 from roughness.survey.words import FACTORS, MULTIPLIER, Factor
 

@@ -12,9 +12,10 @@ from roughness.findings import Finding
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import enumerate_words, show_n, show_share, show_value
 from roughness.reasoning.cautions import IN_ONE_LINE
+from roughness.reasoning.factor_sentence import capital
 from roughness.screens.review_ledger import Line, named, photos_of, sketch
 from roughness.screens.review_words import SIGNS, day
-from roughness.screens.walk_stack import capital, origin_of
+from roughness.screens.walk_stack import origin_of
 from roughness.screens.walk_table import figure
 from roughness.survey.words import MULTIPLIER
 from roughness.trail.review_state import Asked

@@ -13,6 +13,7 @@ from roughness.desk.reviewing import Reviewer
 from roughness.desk.rows import Row
 from roughness.errors import InputError, RoughnessError
 from roughness.quantities.foreign_text import printable
+from roughness.reasoning.factor_sentence import capital
 from roughness.screens.form import Field, Form
 from roughness.screens.help import HelpScreen
 from roughness.screens.menu import Confirm
@@ -25,7 +26,6 @@ from roughness.screens.review_accept import (
 from roughness.screens.review_ledger import named as factor_named
 from roughness.screens.review_opinions import Opinions
 from roughness.screens.review_words import verdict
-from roughness.screens.walk_stack import capital
 from roughness.trail.telling import describe_line, withdrawable
 
 if TYPE_CHECKING:

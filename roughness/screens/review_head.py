@@ -8,10 +8,10 @@ from roughness.desk.folder import SurveyFolder
 from roughness.desk.rows import Row
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_n, show_range
+from roughness.reasoning.factor_sentence import capital
 from roughness.screens.bars import axis, bar, people_bar
 from roughness.screens.reach_list import fitted
 from roughness.screens.review_words import verdict, who_estimated
-from roughness.screens.walk_stack import capital
 
 _WORDS: Final = 28
 

@@ -15,13 +15,14 @@ from roughness.desk.recording import Recorder
 from roughness.errors import RoughnessError
 from roughness.quantities.foreign_text import printable
 from roughness.quantities.printing import show_value
+from roughness.reasoning.factor_sentence import capital
 from roughness.screens.evidence_drop import DropFolder
 from roughness.screens.key_line import KeyLine
 from roughness.screens.walk_at_hand import NoteDueError, SandDueError
 from roughness.screens.walk_course import Course
 from roughness.screens.walk_dialogs import WalkDialogs
 from roughness.screens.walk_next import open_parts
-from roughness.screens.walk_stack import FactorStack, capital, names_of, origin_of
+from roughness.screens.walk_stack import FactorStack, names_of, origin_of
 from roughness.screens.walk_sum import SumSoFar
 from roughness.screens.walk_summary import CAUTIONS, Summary
 from roughness.screens.walk_table import GradeTable, detail

@@ -184,8 +184,3 @@ def names_of(question: Question, segments: Sequence[str]) -> str:
     if segment is not None:
         return f"{factor} of the {printable(segment)}"
     return f"{factor} of the whole part" if segments else factor
-
-
-def capital(words: str) -> str:
-    """Begin with a capital and leave names as they are."""
-    return words[:1].upper() + words[1:]

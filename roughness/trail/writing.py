@@ -175,7 +175,7 @@ def _write(path: Path, raw: bytes, size: int, *, is_new: bool) -> None:
     try:
         _write_and_sync(handle, raw)
         if is_new:
-            _sync_folder(path.parent)
+            sync_folder(path.parent)
     except OSError as error:
         taken_back = _taken_back(handle, size)
         if is_new and taken_back:
@@ -204,7 +204,8 @@ def _taken_back(handle: int, size: int) -> bool:
     return True
 
 
-def _sync_folder(folder: Path) -> None:
+def sync_folder(folder: Path) -> None:
+    """Wait until the disk has what was made, renamed or removed in ``folder``."""
     if os.name == "nt":  # folders cannot be opened there
         return
     handle = os.open(folder, os.O_RDONLY)
